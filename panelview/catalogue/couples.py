@@ -1,0 +1,32 @@
+"""Free pools and the near-equilibrium couples that report them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+#: Free pools the program can infer: id → (oxidised or phosphorylated form, reduced form, compartment).
+#: A ratio pool is oxidised over reduced.
+RATIO_POOLS: dict[str, tuple[str, str, str]] = {
+    "nad_cytosol": ("nad", "nadh", "cytosol"),
+    "nad_mitochondrial_matrix": ("nad", "nadh", "mitochondrial_matrix"),
+    "nadp_cytosol": ("nadp", "nadph", "cytosol"),
+    "nadp_mitochondrial_matrix": ("nadp", "nadph", "mitochondrial_matrix"),
+}
+
+
+@dataclass(frozen=True, slots=True)
+class IndicatorCouple:
+    """A step whose measured pair reports a free pool, assuming the step is at equilibrium.
+
+    pool: of `RATIO_POOLS`, or "adp_cytosol", "amp_cytosol"; step_id: the step; priority: 1 first;
+    matrices: where it may be used; organ: what a proxy matrix stands in for; assumption, limits: text
+    printed under each value; source: of the couple.
+    """
+
+    pool: str
+    step_id: str
+    priority: int
+    matrices: tuple[str, ...]
+    assumption: str
+    limits: str
+    source: str

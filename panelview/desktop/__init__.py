@@ -1,0 +1,1 @@
+"""The window: Qt views of a review. Views show what the review says and compute nothing."""

@@ -1,0 +1,1 @@
+"""Reviews to tables, figures and pages."""
