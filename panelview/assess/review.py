@@ -49,8 +49,10 @@ class Findings:
     ln_gamma, ln_k_prime; delta_g0_prime with _sd (of the constant alone); delta_g with _sd and 95 %
     limits (±inf where a value below LOQ leaves a side open; then delta_g and ln_gamma are NaN);
     p_reversed = P(ΔG′ > 0), p_near; reference_n, _mean, _sd, _lower, _upper: ΔG′ of the reference
-    group (limits NaN below 20 controls); shift = ΔG′ − reference mean, shift_sd: standard deviation of
-    that difference among healthy specimens; p_value, q_value; highlighted; censored: rests on a value
+    group (limits NaN below 20 controls); band_lower, band_upper: the same limits on the shift axis
+    (reference mean = 0); shift = ΔG′ − reference mean, shift_sd: standard deviation of
+    that difference among healthy specimens; shift_lower, shift_upper: where the shift can lie when a
+    value is censored (±inf on the open side, NaN otherwise; shift is then NaN); p_value, q_value; highlighted; censored: rests on a value
     beyond a limit of quantification; inferred: rests on an inferred free pool; defines_pool: the
     column's couple defines a free pool and is not judged by it (its shift is that of the couple).
     """
@@ -74,8 +76,12 @@ class Findings:
     reference_sd: Array
     reference_lower: Array
     reference_upper: Array
+    band_lower: Array
+    band_upper: Array
     shift: Array
     shift_sd: Array
+    shift_lower: Array
+    shift_upper: Array
     shift_call: Codes
     p_value: Array
     q_value: Array
@@ -126,8 +132,9 @@ class ReferenceUsed:
 
     kind: "group", "file", "published" or "none"; label: shown and printed; specimens: indices into
     Review.specimens where the controls are in the study (else empty); count: specimens in the group.
-    ln_c[analyte]: geometric mean of the reference's concentrations (drivers), NaN where unknown; per
-    matrix id.
+    ln_c: matrix id → geometric mean of the reference's concentrations, [analyte], NaN where unknown;
+    members: matrix id → (ln c of each control, [control, analyte], NaN where missing or censored; index
+    of each control among the review's specimens, −1 for others); empty for published values.
     """
 
     kind: str
@@ -135,6 +142,7 @@ class ReferenceUsed:
     specimens: tuple[int, ...]
     count: int
     ln_c: Mapping[str, Array]
+    members: Mapping[str, tuple[Array, NDArray[np.intp]]]
 
 
 @dataclass(frozen=True)
