@@ -39,7 +39,7 @@ def drivers(review: Review, specimen: int, column: int) -> tuple[Driver, ...]:
     rt = GAS_CONSTANT * review.conditions.temperature[specimen]
     terms = rt * nu[used] * (review.concentrations.ln_c[specimen, used] - reference[used])
     made = [
-        Driver(review.concentrations.analytes[a], _label(review, a), float(t))
+        Driver(review.concentrations.analytes[a], _label(review, int(a)), float(t))
         for a, t in zip(used, terms, strict=True)
     ]
     made.sort(key=lambda d: -abs(d.contribution))

@@ -87,7 +87,7 @@ def evaluate(
     ln_c = used.ln_c[rows]
     is_missing = np.isnan(ln_c)
     if active is None:
-        active = _computable(plan, ~is_missing.all(axis=0))
+        active = _computable(plan, np.asarray(~is_missing.all(axis=0)))
     touched = np.flatnonzero((plan.nu[active] != 0).any(axis=0))
     nu = plan.nu[np.ix_(active, touched)]
 

@@ -137,7 +137,7 @@ class Readability:
         known_own = np.array(
             [a.step_id in self._catalogue.constants.own for a in self._catalogue.constants.anchors]
         )
-        return ((plan.combination != 0) & (unknown & ~known_own)).any(axis=1)
+        return np.asarray(((plan.combination != 0) & (unknown & ~known_own)).any(axis=1))
 
     def _index(self, text: str) -> int:
         return self._texts.setdefault(text, len(self._texts))

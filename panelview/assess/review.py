@@ -171,7 +171,7 @@ class Review:
 
     def reason(self, specimen: int, column: int) -> str:
         """Why the column is a proxy, not assessable or missing here; "" where there is nothing to say."""
-        return self.reasons[self.findings.reason[specimen, column]]
+        return self.reasons[int(self.findings.reason[specimen, column])]
 
     def constant_source(self, column: int) -> str:
         return self.catalogue.constants.source(self.columns[column].index)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import difflib
 import re
-from collections import Counter
+from collections import defaultdict
 from dataclasses import dataclass
 
 import numpy as np
@@ -55,12 +55,12 @@ def read_reaction(text: str, catalogue: Catalogue) -> Reaction:
         raise UnreadableReaction(
             text, "a reaction needs exactly one “=”", "write it as lactate + nad = pyruvate + nadh"
         )
-    nu: Counter[str] = Counter()
+    nu: defaultdict[str, float] = defaultdict(float)
     for sign, side in zip((-1, 1), sides, strict=True):
         for term in side.split(" + ") if " + " in side else side.split("+"):
             coefficient, metabolite = _term(text, term.strip(), catalogue)
             nu[metabolite] += sign * coefficient
-    stoichiometry = {k: float(v) for k, v in nu.items() if v}
+    stoichiometry = {k: v for k, v in nu.items() if v}
     if not stoichiometry:
         raise UnreadableReaction(text, "nothing is left on either side", "name what is turned over")
     water = _balance(text, stoichiometry, catalogue)
@@ -116,13 +116,13 @@ def _term(text: str, term: str, catalogue: Catalogue) -> tuple[float, str]:
 
 def _balance(text: str, stoichiometry: dict[str, float], catalogue: Catalogue) -> float:
     """Water needed to balance the reaction; hydrogen ions are held by pH. Raises if no water can."""
-    total: Counter[str] = Counter()
+    total: defaultdict[str, float] = defaultdict(float)
     for metabolite, nu in stoichiometry.items():
         formula = catalogue.metabolites[metabolite].formula
         if formula is None:
             return 0.0  # reduced-count proteins carry no formula
         for element, count in element_counts(formula).items():
-            total[element] += nu * count  # type: ignore[assignment]
+            total[element] += nu * count
     off = {element: n for element, n in total.items() if abs(n) > 1e-9}
     water = -off.get("O", 0.0)
     off["O"] = 0.0

