@@ -51,11 +51,16 @@ def parser_for(command: str) -> argparse.ArgumentParser:
     _add_conditions(made)
     made.add_argument("--matrix", metavar="ID", help="matrix of specimens whose file states none")
     made.add_argument(
-        "--constants", type=Path, metavar="FILE", help="constants of your own (CSV), used in place of the program's"
+        "--constants",
+        type=Path,
+        metavar="FILE",
+        help="constants of your own (CSV), used in place of the program's",
     )
     if command == "constants":
         made.add_argument("--reaction", metavar="TEXT", help='any reaction, as "2 adp = atp + amp"')
-        made.add_argument("--at", type=Path, metavar="FILE", help="CSV of steps and conditions, one result a row")
+        made.add_argument(
+            "--at", type=Path, metavar="FILE", help="CSV of steps and conditions, one result a row"
+        )
     else:
         made.add_argument(
             "--reference", metavar="WHICH", help="controls: published, none, group:NAME or a panel file"
@@ -71,7 +76,9 @@ def parser_for(command: str) -> argparse.ArgumentParser:
             "--shift-floor", type=float, metavar="KJ", help="smallest shift that is highlighted, kJ/mol"
         )
     made.add_argument("--format", choices=("table", "csv", "json"), default="table", help="how to print")
-    made.add_argument("--jobs", type=int, default=1, metavar="N", help="processes that draw pages side by side")
+    made.add_argument(
+        "--jobs", type=int, default=1, metavar="N", help="processes that draw pages side by side"
+    )
     made.add_argument("--quiet", action="store_true", help="print errors only")
     if command == "review":
         made.add_argument("files", nargs="+", type=Path, metavar="FILE", help="panel files")

@@ -140,7 +140,9 @@ def _constants(parsed: argparse.Namespace) -> int:
         try:
             rows = table.at_rows(read_at(parsed.at), catalogue, conditions)
         except table.UnknownStep as error:
-            raise InputRefused((_at_problem(name, error.row, "step", f"“{error.step}” is no catalogued step"),)) from error
+            raise InputRefused(
+                (_at_problem(name, error.row, "step", f"“{error.step}” is no catalogued step"),)
+            ) from error
         except UnreadableReaction as error:
             raise InputRefused((_at_problem(name, 0, "reaction", error.what, error.remedy),)) from error
     elif parsed.reaction:

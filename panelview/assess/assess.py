@@ -19,7 +19,6 @@ from panelview.assess.reference import reference_group
 from panelview.assess.review import Concentrations, Findings, Review, StepColumn
 from panelview.assess.settings import Settings
 from panelview.assess.specimen_conditions import resolve_conditions
-from panelview.assess.state import state_rows
 from panelview.catalogue.load import Catalogue
 from panelview.intake.panel import Panel
 
@@ -40,8 +39,8 @@ def assess(panel: Panel, catalogue: Catalogue, settings: Settings = _DEFAULT_SET
     columns = step_columns(catalogue)
     conditions, origins = resolve_conditions(panel.specimens, catalogue.matrices, settings)
     used = concentrations(panel, analytes)
-    group = reference_group(panel, catalogue, settings, analytes)
     constants = ConditionConstants.of(catalogue.constants, conditions)
+    group = reference_group(panel, catalogue, settings, used, constants)
     planner = Planner(catalogue, columns, analytes, settings.free_ratios)
     readability = Readability(catalogue, columns, analytes)
 
@@ -56,7 +55,6 @@ def assess(panel: Panel, catalogue: Catalogue, settings: Settings = _DEFAULT_SET
         board.fill(plan, rows, action, constants.rt[rows][:, None])
         reference = group.against(plan, rows, action, constants.rt[rows], used)
         board.compare(rows, action, reference)
-    findings = board.findings(settings.shift_floor)
     return Review(
         program_version=panelview.__version__,
         catalogue=catalogue,
@@ -65,13 +63,13 @@ def assess(panel: Panel, catalogue: Catalogue, settings: Settings = _DEFAULT_SET
         conditions=conditions,
         condition_origin=origins,
         columns=columns,
-        findings=findings,
+        findings=board.findings(settings.shift_floor),
         reasons=readability.texts(),
         concentrations=used,
         plans=plans,
         plan_of=plan_of,
+        constants=constants,
         reference=group.used,
-        state=state_rows(catalogue, columns, plans, plan_of, used, constants, conditions, findings),
         shift_floor=settings.shift_floor,
     )
 
@@ -86,9 +84,7 @@ def _plans(
     available = np.isfinite(used.ln_c)
     for matrix in sorted(set(matrices)):
         rows = np.flatnonzero(matrices == matrix)
-        index, pools = known_pools(
-            catalogue, matrix, available[rows], used.analytes, settings.free_ratios
-        )
+        index, pools = known_pools(catalogue, matrix, available[rows], used.analytes, settings.free_ratios)
         plan_of[rows] = index + len(plans)
         plans += [planner.plan(matrix, uses) for uses in pools]
     return tuple(plans), plan_of

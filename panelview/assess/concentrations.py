@@ -29,9 +29,7 @@ def concentrations(panel: Panel, analytes: tuple[str, ...]) -> Concentrations:
     shape = (len(panel.specimens), len(analytes))
     readings = panel.readings
     position = {analyte: k for k, analyte in enumerate(analytes)}
-    column = np.fromiter(
-        (position.get(a, -1) for a in readings.analyte), dtype=np.intp, count=len(readings)
-    )
+    column = np.fromiter((position.get(a, -1) for a in readings.analyte), dtype=np.intp, count=len(readings))
     usable = (
         (column >= 0)
         & np.isin(readings.state, (State.MEASURED, State.BELOW_LOQ, State.ABOVE_RANGE))

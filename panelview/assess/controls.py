@@ -120,52 +120,56 @@ def p_values(shift: Array, sd: Array, reference: Reference) -> Array:
 
 
 def _limits(values: Array, n: Array) -> tuple[Array, Array]:
-    """95 % reference limits of each column: ranks from 120 controls on, robust from 20, else none."""
+    """95 % reference limits of each column: ranks from 120 controls on, robust from 20, else none.
+
+    values: [control, column], NaN where incomplete; n: [column].
+    """
     lower = np.full(values.shape[1], np.nan)
     upper = np.full(values.shape[1], np.nan)
-    for c in range(values.shape[1]):
-        if n[c] < LEAST_CONTROLS_FOR_INTERVAL:
-            continue
+    for c in np.flatnonzero(n >= _LEAST_FOR_RANKS):
         column = values[np.isfinite(values[:, c]), c]
-        if len(column) >= _LEAST_FOR_RANKS:
-            lower[c], upper[c] = np.quantile(column, (0.025, 0.975), method="weibull")
-        else:
-            lower[c], upper[c] = robust_limits(column)
+        lower[c], upper[c] = np.quantile(column, (0.025, 0.975), method="weibull")
+    robust = np.flatnonzero((n >= LEAST_CONTROLS_FOR_INTERVAL) & (n < _LEAST_FOR_RANKS))
+    if len(robust):
+        lower[robust], upper[robust] = robust_limits(values[:, robust])
     return lower, upper
 
 
-def robust_limits(values: Array) -> tuple[float, float]:
+def robust_limits(values: Array) -> tuple[Array, Array]:
     """95 % reference limits by the robust method: T ± t(n−1, 0.975) √(S² + S_T²).
 
-    values: one column, n ≥ 20. Biweight location (c = 3.7) iterated to convergence, biweight spreads
-    with c = 205.6 (between subjects) and c = 3.7 (of the location).
+    values: [control, column], NaN where missing, n ≥ 20 each. Biweight location (c = 3.7) iterated to
+    convergence, biweight spreads with c = 205.6 (between subjects) and c = 3.7 (of the location).
     Source: Horn, Pesce and Copeland (1998); CLSI EP28-A3c. Constants from memory.
     """
-    n = len(values)
-    median = float(np.median(values))
-    mad = float(np.median(np.abs(values - median))) / 0.6745
-    if mad < _NO_SPREAD:
-        return median, median
+    n = np.isfinite(values).sum(axis=0)
+    median = np.nanmedian(values, axis=0)
+    mad = np.maximum(np.nanmedian(np.abs(values - median), axis=0) / 0.6745, _NO_SPREAD)
     location = median
     for _ in range(100):
-        u = (values - location) / (3.7 * mad)
-        weight = np.where(np.abs(u) < 1, (1 - u**2) ** 2, 0.0)
-        new = float(np.sum(weight * values) / np.sum(weight))
-        if abs(new - location) < 1e-9:
-            break
+        weight = _biweight((values - location) / (3.7 * mad)) ** 2
+        new = np.nansum(weight * values, axis=0) / weight.sum(axis=0)
+        settled = np.abs(new - location).max() < 1e-9
         location = new
-    between = _biweight_spread(values, median, mad, 205.6)
-    of_location = _biweight_spread(values, location, between, 3.7) / np.sqrt(n)
-    half = t_quantile(0.975, n - 1) * float(np.hypot(between, of_location))
+        if settled:
+            break
+    between = _biweight_spread(values, median, mad, 205.6, n)
+    of_location = _biweight_spread(values, location, between, 3.7, n) / np.sqrt(n)
+    half = t_quantile(0.975, n - 1.0) * np.hypot(between, of_location)
     return location - half, location + half
 
 
-def _biweight_spread(values: Array, centre: float, scale: float, c: float) -> float:
-    """Biweight midvariance as a standard deviation."""
-    n = len(values)
+def _biweight(u: Array) -> Array:
+    """1 − u² inside ±1, else 0 (0 for NaN)."""
+    return np.where(np.abs(u) < 1, 1 - u**2, 0.0)
+
+
+def _biweight_spread(values: Array, centre: Array, scale: Array, c: float, n: Array) -> Array:
+    """Biweight midvariance of each column, as a standard deviation."""
     u = (values - centre) / (c * scale)
     inside = np.abs(u) < 1
-    u2 = u[inside] ** 2
-    top = n * np.sum((values[inside] - centre) ** 2 * (1 - u2) ** 4)
-    bottom = np.sum((1 - u2) * (1 - 5 * u2))
-    return float(np.sqrt(top / (bottom * max(1.0, bottom - 1))))
+    square = np.where(inside, (values - centre) ** 2, 0.0)
+    u2 = np.where(inside, u**2, 0.0)
+    top = n * np.sum(square * (1 - u2) ** 4, axis=0)
+    bottom = np.sum(np.where(inside, (1 - u2) * (1 - 5 * u2), 0.0), axis=0)
+    return np.asarray(np.sqrt(top / (bottom * np.maximum(1.0, bottom - 1))))

@@ -124,9 +124,7 @@ def _terms(review: Review, specimen: int, column: int) -> tuple[Term, ...]:
     plan = review.plans[review.plan_of[specimen]]
     step = review.columns[column].step
     own = dict(step.stoichiometry)
-    through = [
-        a for k, a in enumerate(review.concentrations.analytes) if plan.nu[column, k] and a not in own
-    ]
+    through = [a for k, a in enumerate(review.concentrations.analytes) if plan.nu[column, k] and a not in own]
     reference = reference_ln_c(review, specimen, column)
     nu_of = [*own.items(), *((a, 0.0) for a in through)]
     return tuple(_term(review, specimen, column, a, nu, reference) for a, nu in nu_of)
@@ -145,8 +143,18 @@ def _term(
     sd = float(held.sd[specimen, k]) if reading >= 0 else math.nan
     reported = _reported(review, reading)
     if record.unit_activity:
-        return Term(metabolite, record.symbol, record.name, nu, math.nan, math.nan, "unit activity", "",
-                    math.nan, math.nan)
+        return Term(
+            metabolite,
+            record.symbol,
+            record.name,
+            nu,
+            math.nan,
+            math.nan,
+            "unit activity",
+            "",
+            math.nan,
+            math.nan,
+        )
     origin = _origin(review, specimen, column, metabolite, effective, reading)
     if origin in ("free, inferred", "set by the reviewer"):
         reported = f"total {reported}, not used" if reported else ""
@@ -159,8 +167,9 @@ def _term(
         if abs(ln_factor) < math.log(_FAR_OFF):
             turning = concentration * math.exp(ln_factor)
     reference_c = float(np.exp(reference[k])) if math.isfinite(reference[k]) else math.nan
-    return Term(metabolite, record.symbol, record.name, nu, concentration, sd, origin, reported,
-                reference_c, turning)
+    return Term(
+        metabolite, record.symbol, record.name, nu, concentration, sd, origin, reported, reference_c, turning
+    )
 
 
 def _origin(
@@ -172,7 +181,9 @@ def _origin(
         if metabolite in forms and not effective:
             is_side = use.pool not in RATIO_POOLS or RATIO_POOLS[use.pool][2] == _side(review, column)
             if is_side:
-                return {"reviewer": "set by the reviewer", "couple": "free, inferred"}.get(use.kind, "missing")
+                return {"reviewer": "set by the reviewer", "couple": "free, inferred"}.get(
+                    use.kind, "missing"
+                )
     if reading < 0:
         return "missing"
     if metabolite in plan.totals[column]:
@@ -189,7 +200,9 @@ def _reported(review: Review, reading: int) -> str:
     if reading < 0:
         return ""
     r = review.panel.readings
-    return f"{r.value[reading]} {r.unit[reading]} (row {r.row[reading]}, {r.column[reading]})".replace("  ", " ")
+    return f"{r.value[reading]} {r.unit[reading]} (row {r.row[reading]}, {r.column[reading]})".replace(
+        "  ", " "
+    )
 
 
 def _pool_words(review: Review, specimen: int, column: int) -> tuple[str, ...]:

@@ -241,8 +241,10 @@ def _unknown_ratio(catalogue: Catalogue, pool: str) -> str:
         if couple.pool == pool:
             needed = " and ".join(catalogue.metabolites[i].symbol for i in couple_analytes(catalogue, couple))
             pairs.append(needed)
-    ask = f"; would be known from {' or from '.join(pairs)}, or set by the reviewer" if pairs else (
-        "; can be set by the reviewer"
+    ask = (
+        f"; would be known from {' or from '.join(pairs)}, or set by the reviewer"
+        if pairs
+        else ("; can be set by the reviewer")
     )
     names = catalogue.metabolites[oxidised].symbol, catalogue.metabolites[reduced].symbol
     return f"free {names[0]}/{names[1]} of the {compartment.replace('_', ' ')} is not known{ask}"

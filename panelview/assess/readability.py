@@ -56,12 +56,16 @@ class Readability:
                 code[:, c], reason[:, c] = Assessability.MISSING, self._index(plan.blocked[c])
                 continue
             if plan.defines[c] and not plan.nu[c].any():
-                text = _join(self._definition(plan, c), "both of its adenylates are inferred, no pair is left")
+                text = _join(
+                    self._definition(plan, c), "both of its adenylates are inferred, no pair is left"
+                )
                 code[:, c], reason[:, c] = Assessability.NOT_ASSESSABLE, self._index(text)
                 continue
             level, text = self._of_pools(plan, c, base, text)
             if no_constant[c]:
-                text = _join(text, "no equilibrium constant is known: only the shift against controls can be read")
+                text = _join(
+                    text, "no equilibrium constant is known: only the shift against controls can be read"
+                )
             code[:, c], reason[:, c] = level, self._index(text)
             self._mark_missing(plan, c, missing, code, reason)
         return code, reason
@@ -73,9 +77,7 @@ class Readability:
         level = _BY_WORD[entry.assessability]
         return level, "" if level == Assessability.ASSESSED else entry.reason
 
-    def _of_pools(
-        self, plan: Plan, c: int, level: Assessability, text: str
-    ) -> tuple[Assessability, str]:
+    def _of_pools(self, plan: Plan, c: int, level: Assessability, text: str) -> tuple[Assessability, str]:
         """What the column's pools add: defining couples, proxied couples, totals read as free."""
         if plan.defines[c]:
             return level, _join(self._definition(plan, c), text)

@@ -126,28 +126,35 @@ def control_rows(panel: Panel, group: str | None = None) -> NDArray[np.intp]:
 
 
 def reference_group(
-    panel: Panel, catalogue: Catalogue, settings: Settings, analytes: tuple[str, ...]
+    panel: Panel,
+    catalogue: Catalogue,
+    settings: Settings,
+    used: Concentrations,
+    constants: ConditionConstants,
 ) -> ReferenceGroup:
-    """The reference that the settings choose. Raises UnknownReference."""
+    """The reference that the settings choose; used, constants: of the panel. Raises UnknownReference."""
     choice = settings.reference
     if choice.kind == "none":
         return _nothing("no reference chosen")
     if choice.kind == "published":
-        return _published(catalogue, analytes, panel)
+        return _published(catalogue, used.analytes, panel)
     if choice.kind == "file" and choice.panel is not None:
         rows = control_rows(choice.panel)
         rows = rows if len(rows) else np.arange(len(choice.panel.specimens))
-        return _controls("file", choice.name, choice.panel, rows, catalogue, settings, analytes)
+        theirs = concentrations(choice.panel, used.analytes)
+        conditions, _ = resolve_conditions(choice.panel.specimens, catalogue.matrices, settings)
+        at = ConditionConstants.of(catalogue.constants, conditions)
+        return _controls("file", choice.name, choice.panel, rows, theirs, at)
     if choice.kind == "group":
         rows = control_rows(panel, choice.name)
         if len(rows) == 0:
             raise UnknownReference(choice.name, tuple(sorted({s.group for s in panel.specimens if s.group})))
-        return _controls("group", choice.name, panel, rows, catalogue, settings, analytes)
+        return _controls("group", choice.name, panel, rows, used, constants)
     rows = control_rows(panel)
     if len(rows):
         names = sorted({panel.specimens[r].group for r in rows})
-        return _controls("group", ", ".join(names), panel, rows, catalogue, settings, analytes)
-    return _published(catalogue, analytes, panel)
+        return _controls("group", ", ".join(names), panel, rows, used, constants)
+    return _published(catalogue, used.analytes, panel)
 
 
 def _nothing(label: str) -> ReferenceGroup:
@@ -159,18 +166,15 @@ def _controls(
     name: str,
     panel: Panel,
     rows: NDArray[np.intp],
-    catalogue: Catalogue,
-    settings: Settings,
-    analytes: tuple[str, ...],
+    used: Concentrations,
+    constants: ConditionConstants,
 ) -> ReferenceGroup:
-    used = concentrations(panel, analytes)
-    conditions, _ = resolve_conditions(panel.specimens, catalogue.matrices, settings)
     matrices = np.array([s.matrix for s in panel.specimens], dtype=object)
     controls = _Controls(
         matrices=matrices,
         rows=rows,
         used=used,
-        constants=ConditionConstants.of(catalogue.constants, conditions),
+        constants=constants,
         in_study=kind == "group",
     )
     ln_c: dict[str, Array] = {}

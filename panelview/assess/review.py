@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,6 +16,7 @@ from panelview.intake.panel import Panel, SpecimenFacts
 from panelview.thermo.conditions import Conditions
 
 if TYPE_CHECKING:
+    from panelview.assess.mass_action import ConditionConstants
     from panelview.assess.plan import Plan
 
 Array = NDArray[np.float64]
@@ -150,7 +152,8 @@ class Review:
     """A panel assessed: see `Findings` for the numbers.
 
     conditions: of each specimen; condition_origin[field][specimen]: one of the ORIGIN_ words;
-    plan_of: index into `plans` of each specimen (which free pools it used and how).
+    plan_of: index into `plans` of each specimen (which free pools it used and how); constants: of every
+    step at each specimen's conditions.
     """
 
     program_version: str
@@ -165,8 +168,8 @@ class Review:
     concentrations: Concentrations
     plans: tuple[Plan, ...]
     plan_of: NDArray[np.int32]
+    constants: ConditionConstants
     reference: ReferenceUsed
-    state: tuple[StateRow, ...]
     shift_floor: float
 
     def reason(self, specimen: int, column: int) -> str:
@@ -177,4 +180,12 @@ class Review:
         return self.catalogue.constants.source(self.columns[column].index)
 
     def state_of(self, specimen: int) -> tuple[StateRow, ...]:
-        return tuple(r for r in self.state if r.specimen == specimen)
+        """Redox and energy state of one specimen."""
+        from panelview.assess.state import state_of  # made from the review, so imported late
+
+        return state_of(self, specimen)
+
+    @cached_property
+    def state(self) -> tuple[StateRow, ...]:
+        """Redox and energy state of every specimen."""
+        return tuple(row for i in range(len(self.specimens)) for row in self.state_of(i))

@@ -88,9 +88,7 @@ def _shift_sentence(review: Review, specimen: int, column: int, moved: tuple[Dri
     difference = f.shift[specimen, column]
     if call == Shift.NO_REFERENCE:
         if math.isfinite(difference) and n:
-            return (
-                f"ΔG′ differs from the mean of {whom} by {signed(difference)} kJ/mol; too few for a test."
-            )
+            return f"ΔG′ differs from the mean of {whom} by {signed(difference)} kJ/mol; too few for a test."
         return "No reference to compare with."
     if not math.isfinite(difference):
         bound = _shift_words(review, specimen, column)

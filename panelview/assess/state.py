@@ -2,22 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
 from panelview.assess.calls import Z95
-from panelview.assess.mass_action import ConditionConstants
 from panelview.assess.plan import Plan, couple_analytes
-from panelview.assess.review import Concentrations, Findings, StateRow, StepColumn
+from panelview.assess.review import Review, StateRow
 from panelview.catalogue.couples import RATIO_POOLS, IndicatorCouple
 from panelview.catalogue.load import Catalogue
-from panelview.thermo.conditions import Conditions
 from panelview.thermo.physical import FARADAY_CONSTANT, LN10
-
-Array = NDArray[np.float64]
 
 #: Standard transformed potentials at pH 7 and 25 °C, V (biochemistry textbooks, memory); NAD(P)⁺ takes up
 #: one H⁺ for two electrons, so E′° falls by RT ln10/2F a pH unit.
@@ -42,20 +37,14 @@ class _LogQuantity:
 class _Specimen:
     """One specimen's numbers, with the arithmetic that every quantity shares."""
 
-    def __init__(
-        self,
-        catalogue: Catalogue,
-        used: Concentrations,
-        constants: ConditionConstants,
-        ph: float,
-        row: int,
-    ) -> None:
-        self.ph = ph
-        self._used = used
+    def __init__(self, review: Review, row: int) -> None:
+        self._used = review.concentrations
         self._row = row
-        self._position = {a: k for k, a in enumerate(used.analytes)}
-        self._step = {s.id: k for k, s in enumerate(catalogue.steps)}
+        self._position = {a: k for k, a in enumerate(self._used.analytes)}
+        self._step = {s.id: k for k, s in enumerate(review.catalogue.steps)}
+        constants = review.constants
         at = constants.row[row]
+        self.ph = float(review.conditions.ph[row])
         self.rt = float(constants.rt[row])
         self._ln_k = -constants.steps.delta_g0_prime[at] / self.rt
         slope = constants.steps.by[at] * constants.sd[at]
@@ -93,29 +82,18 @@ class _Specimen:
         )
 
 
-def state_rows(
-    catalogue: Catalogue,
-    columns: tuple[StepColumn, ...],
-    plans: Sequence[Plan],
-    plan_of: NDArray[np.int32],
-    used: Concentrations,
-    constants: ConditionConstants,
-    conditions: Conditions,
-    findings: Findings,
-) -> tuple[StateRow, ...]:
-    """Every quantity that a specimen's analytes allow, in the order of state.csv."""
-    rows: list[StateRow] = []
-    hydrolysis = next(k for k, c in enumerate(columns) if c.step.id == "atp_hydrolysis")
-    for i in range(len(plan_of)):
-        plan = plans[plan_of[i]]
-        if plan.matrix == "urine":
-            continue
-        specimen = _Specimen(catalogue, used, constants, float(conditions.ph[i]), i)
-        rows += _redox(catalogue, plan, specimen, i)
-        rows += _pairs(plan, specimen, i)
-        rows += _adenylates(catalogue, plan, specimen, i)
-        rows += _hydrolysis(findings, hydrolysis, plan, i)
-    return tuple(rows)
+def state_of(review: Review, row: int) -> tuple[StateRow, ...]:
+    """Every quantity that the analytes of one specimen allow, in the order of state.csv."""
+    plan = review.plans[review.plan_of[row]]
+    if plan.matrix == "urine":
+        return ()
+    specimen = _Specimen(review, row)
+    return (
+        *_redox(review.catalogue, plan, specimen, row),
+        *_pairs(plan, specimen, row),
+        *_adenylates(review.catalogue, plan, specimen, row),
+        *_hydrolysis(review, plan, row),
+    )
 
 
 def _row(
@@ -137,7 +115,9 @@ def _row(
     return StateRow(specimen, quantity, compartment, couple, value, lower, upper, unit, *judged)
 
 
-def ln_ratio_terms(catalogue: Catalogue, couple: IndicatorCouple) -> tuple[dict[str, float], dict[str, float]]:
+def ln_ratio_terms(
+    catalogue: Catalogue, couple: IndicatorCouple
+) -> tuple[dict[str, float], dict[str, float]]:
     """ln(oxidised/reduced) of a couple's free pool as exponents of its pair and a multiple of ln K′.
 
     At equilibrium Σ ν ln c(pair) − ν_red ln r = ln K′, so ln r = (Σ ν ln c − ln K′)/ν_red.
@@ -153,8 +133,10 @@ def ln_ratio_terms(catalogue: Catalogue, couple: IndicatorCouple) -> tuple[dict[
 def _redox(catalogue: Catalogue, plan: Plan, specimen: _Specimen, row: int) -> list[StateRow]:
     rows = []
     chosen = {use.pool: use.couple for use in plan.pools}
-    for couple in sorted(catalogue.couples, key=lambda c: (list(RATIO_POOLS).index(c.pool), c.priority)
-                         if c.pool in RATIO_POOLS else (99, 0)):
+    for couple in sorted(
+        catalogue.couples,
+        key=lambda c: (list(RATIO_POOLS).index(c.pool), c.priority) if c.pool in RATIO_POOLS else (99, 0),
+    ):
         if couple.pool not in RATIO_POOLS or plan.matrix not in couple.matrices:
             continue
         if not specimen.has(*couple_analytes(catalogue, couple)):
@@ -206,11 +188,17 @@ def _pairs(plan: Plan, specimen: _Specimen, row: int) -> list[StateRow]:
         log = specimen.log({"lactate": 1.0, "pyruvate": -1.0}, {})
         judged = ("valid", "ratio of two measured values")
         if plan.matrix in _FLUIDS:
-            judged = ("proxy", "stands in for cytosolic redox of the organs that release them; needs prompt "
-                      "deproteinisation")
+            judged = (
+                "proxy",
+                "stands in for cytosolic redox of the organs that release them; needs prompt "
+                "deproteinisation",
+            )
             if specimen.amount("lactate") < LEAST_LACTATE:
-                judged = ("proxy", "lactate under 2.5 mmol/L: the ratio does not separate causes (Debray et "
-                          "al. 2007), so it is shown and not called")
+                judged = (
+                    "proxy",
+                    "lactate under 2.5 mmol/L: the ratio does not separate causes (Debray et "
+                    "al. 2007), so it is shown and not called",
+                )
         rows.append(_row(row, "lactate_pyruvate_ratio", "extract", "lactate_dehydrogenase", log, "1", judged))
     if specimen.has("hydroxybutyrate_3", "acetoacetate"):
         log = specimen.log({"hydroxybutyrate_3": 1.0, "acetoacetate": -1.0}, {})
@@ -218,9 +206,21 @@ def _pairs(plan: Plan, specimen: _Specimen, row: int) -> list[StateRow]:
         if plan.matrix in _FLUIDS:
             judged = ("proxy", "stands in for mitochondrial redox of liver; acetoacetate falls on storage")
         if plan.matrix in ("erythrocyte", "skeletal_muscle"):
-            judged = ("not_valid", "no 3-hydroxybutyrate dehydrogenase to speak of here: the values are blood's")
-        rows.append(_row(row, "hydroxybutyrate_acetoacetate_ratio", "extract",
-                         "hydroxybutyrate_dehydrogenase", log, "1", judged))
+            judged = (
+                "not_valid",
+                "no 3-hydroxybutyrate dehydrogenase to speak of here: the values are blood's",
+            )
+        rows.append(
+            _row(
+                row,
+                "hydroxybutyrate_acetoacetate_ratio",
+                "extract",
+                "hydroxybutyrate_dehydrogenase",
+                log,
+                "1",
+                judged,
+            )
+        )
     return rows
 
 
@@ -229,8 +229,11 @@ def _adenylates(catalogue: Catalogue, plan: Plan, specimen: _Specimen, row: int)
     couples = {use.pool: use.couple for use in plan.pools}
     free_adp = couples["adp_cytosol"]
     adp: tuple[dict[str, float], dict[str, float]] = ({"adp": 1.0}, {})
-    judged = ("valid", "measured totals") if plan.matrix == "erythrocyte" else (
-        "proxy", "from measured total ADP, most of which is bound in tissue")
+    judged = (
+        ("valid", "measured totals")
+        if plan.matrix == "erythrocyte"
+        else ("proxy", "from measured total ADP, most of which is bound in tissue")
+    )
     source, place = "", "extract"
     if free_adp is not None and specimen.has(*couple_analytes(catalogue, free_adp)):
         # ADP + PCr = ATP + Cr at equilibrium: [ADP] = [ATP][Cr]/([PCr] K′).
@@ -244,7 +247,9 @@ def _adenylates(catalogue: Catalogue, plan: Plan, specimen: _Specimen, row: int)
             nu = {a: 2 * n - (1.0 if a == "atp" else 0.0) for a, n in adp[0].items()}
             amp = (nu, {free_adp.step_id: -2.0, free_amp.step_id: 1.0})
             judged_amp = ("valid", free_amp.assumption)
-            rows.append(_row(row, "amp_free", place, free_amp.step_id, specimen.log(*amp), "mol/L", judged_amp))
+            rows.append(
+                _row(row, "amp_free", place, free_amp.step_id, specimen.log(*amp), "mol/L", judged_amp)
+            )
     if specimen.has("atp", "phosphate", *adp[0]):
         nu = {"atp": 1.0, "phosphate": -1.0}
         for analyte, n in adp[0].items():
@@ -266,12 +271,22 @@ def _energy_charge(specimen: _Specimen, row: int) -> StateRow:
     slope = amounts * (weight - charge) / total
     half = Z95 * float(np.sqrt(slope**2 @ sd**2))
     return StateRow(
-        row, "adenylate_energy_charge", "extract", "", charge, max(charge - half, 0.0), min(charge + half, 1.0),
-        "1", "valid", "measured totals, not free nucleotides",
+        row,
+        "adenylate_energy_charge",
+        "extract",
+        "",
+        charge,
+        max(charge - half, 0.0),
+        min(charge + half, 1.0),
+        "1",
+        "valid",
+        "measured totals, not free nucleotides",
     )
 
 
-def _hydrolysis(findings: Findings, column: int, plan: Plan, row: int) -> list[StateRow]:
+def _hydrolysis(review: Review, plan: Plan, row: int) -> list[StateRow]:
+    findings = review.findings
+    column = next(k for k, c in enumerate(review.columns) if c.step.id == "atp_hydrolysis")
     value = float(findings.delta_g[row, column])
     if not np.isfinite(value):
         return []
@@ -279,8 +294,14 @@ def _hydrolysis(findings: Findings, column: int, plan: Plan, row: int) -> list[S
     judged = ("proxy", "from measured total ADP") if totals else ("valid", "from ΔG′ of the hydrolysis step")
     return [
         StateRow(
-            row, "atp_hydrolysis_delta_g", "cytosol" if plan.inferred[column] else "extract", "atp_hydrolysis",
-            value, float(findings.delta_g_lower95[row, column]), float(findings.delta_g_upper95[row, column]),
-            "kJ/mol", *judged,
+            row,
+            "atp_hydrolysis_delta_g",
+            "cytosol" if plan.inferred[column] else "extract",
+            "atp_hydrolysis",
+            value,
+            float(findings.delta_g_lower95[row, column]),
+            float(findings.delta_g_upper95[row, column]),
+            "kJ/mol",
+            *judged,
         )
     ]

@@ -23,8 +23,8 @@ def two_sided_p(t: Array, df: Array) -> Array:
     return np.asarray(2 * tail, dtype=np.float64)
 
 
-def t_quantile(p: float, df: float) -> float:
+def t_quantile(p: float, df: Array) -> Array:
     """Quantile of Student's t."""
     from scipy.special import stdtrit
 
-    return float(stdtrit(df, p))
+    return np.asarray(stdtrit(df, p), dtype=np.float64)

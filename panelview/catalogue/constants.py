@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -80,6 +81,21 @@ class StepConstants:
 
 
 @dataclass(frozen=True)
+class _AnchorArrays:
+    """Anchors of all steps as arrays [step]; `table`, `table_flat`: ln K′ of the bare species table at the
+    anchor's conditions, at its own temperature and at 298.15 K."""
+
+    ln_k_prime: Array
+    sd: Array
+    temperature: Array
+    enthalpy: Array
+    enthalpy_sd: Array
+    uses_species_enthalpy: NDArray[np.bool_]
+    table: Array
+    table_flat: Array
+
+
+@dataclass(frozen=True)
 class ConstantSet:
     """Anchors of all steps (in catalogue order) with the reviewer's own constants in their place.
 
@@ -106,7 +122,7 @@ class ConstantSet:
         return replace(self, own=dict(own))
 
     def basis(self, step: int) -> str:
-        """"measured", "estimated", "none" or "own" for the step at this index."""
+        """ "measured", "estimated", "none" or "own" for the step at this index."""
         return "own" if self.step_ids[step] in self.own else self.anchors[step].basis
 
     def source(self, step: int) -> str:
@@ -126,39 +142,27 @@ class ConstantSet:
         anchor's own ΔrH′°. pH is taken as printed by the laboratory (glass electrode), as in the
         measurements, so that the difference between an electrode pH and −log10[H⁺] cancels too.
         """
-        table_t = self._table_ln_k(conditions)
-        flat = conditions.replace(temperature=TABLE_TEMPERATURE)
-        table_flat = self._table_ln_k(flat)
-        anchor_at = self._anchor_conditions()
-        at_anchor_t = np.diagonal(self._table_ln_k(anchor_at).value)
-        at_anchor_flat = np.diagonal(
-            self._table_ln_k(anchor_at.replace(temperature=TABLE_TEMPERATURE)).value
-        )
-
+        anchor = self._anchor_arrays
         temperature = conditions.temperature[:, None]
         rt = GAS_CONSTANT * temperature
-        ln_anchor = np.array([a.ln_k_prime for a in self.anchors])
-        enthalpy = np.array([a.enthalpy for a in self.anchors])
-        enthalpy_sd = np.array([a.enthalpy_sd for a in self.anchors])
-        t_anchor = anchor_at.temperature
-        with_species = np.array([a.uses_species_enthalpy for a in self.anchors])
-
-        vant_hoff = -enthalpy / GAS_CONSTANT * (1 / temperature - 1 / t_anchor)
-        ln_k = ln_anchor + np.where(
-            with_species,
-            table_t.value - at_anchor_t,
-            table_flat.value - at_anchor_flat + vant_hoff,
+        table_t = self._table_ln_k(conditions)
+        table_flat = self._table_ln_k(conditions.replace(temperature=TABLE_TEMPERATURE))
+        vant_hoff = -anchor.enthalpy / GAS_CONSTANT * (1 / temperature - 1 / anchor.temperature)
+        ln_k = anchor.ln_k_prime + np.where(
+            anchor.uses_species_enthalpy,
+            table_t.value - anchor.table,
+            table_flat.value - anchor.table_flat + vant_hoff,
         )
-        by_ln_k = np.where(with_species[None, :, None], table_t.by, table_flat.by)
+        by_ln_k = np.where(anchor.uses_species_enthalpy[None, :, None], table_t.by, table_flat.by)
         by_ln_k[..., _TEMPERATURE] = np.where(
-            with_species, table_t.by[..., _TEMPERATURE], enthalpy / (GAS_CONSTANT * temperature**2)
+            anchor.uses_species_enthalpy,
+            table_t.by[..., _TEMPERATURE],
+            anchor.enthalpy / (GAS_CONSTANT * temperature**2),
         )
         by = -rt[..., None] * by_ln_k
         by[..., _TEMPERATURE] -= GAS_CONSTANT * ln_k
-
-        sd_anchor = np.array([a.sd for a in self.anchors])
-        carried = enthalpy_sd * np.abs(1 - temperature / t_anchor)
-        sd = np.hypot(sd_anchor, carried)
+        carried = anchor.enthalpy_sd * np.abs(1 - temperature / anchor.temperature)
+        sd = np.hypot(anchor.sd, carried)
         made = StepConstants(delta_g0_prime=-rt * ln_k, sd=sd, by=by)
         return self._put_own(made, rt)
 
@@ -192,12 +196,25 @@ class ConstantSet:
         by[..., _TEMPERATURE] -= value / conditions.temperature[:, None]
         return FormationEnergies(value=value, by=by)
 
-    def _anchor_conditions(self) -> Conditions:
-        return Conditions.of(
+    @cached_property
+    def _anchor_arrays(self) -> _AnchorArrays:
+        """The anchors as arrays, with the bare table's ln K′ at each anchor's own conditions."""
+        own = Conditions.of(
             ph=[a.ph for a in self.anchors],
             temperature=[a.temperature for a in self.anchors],
             ionic_strength=[a.ionic_strength for a in self.anchors],
             pmg=[a.pmg for a in self.anchors],
+        )
+        flat = own.replace(temperature=TABLE_TEMPERATURE)
+        return _AnchorArrays(
+            ln_k_prime=np.array([a.ln_k_prime for a in self.anchors]),
+            sd=np.array([a.sd for a in self.anchors]),
+            temperature=own.temperature,
+            enthalpy=np.array([a.enthalpy for a in self.anchors]),
+            enthalpy_sd=np.array([a.enthalpy_sd for a in self.anchors]),
+            uses_species_enthalpy=np.array([a.uses_species_enthalpy for a in self.anchors]),
+            table=np.diagonal(self._table_ln_k(own).value),
+            table_flat=np.diagonal(self._table_ln_k(flat).value),
         )
 
     def _put_own(self, made: StepConstants, rt: Array) -> StepConstants:

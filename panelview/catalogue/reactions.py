@@ -100,7 +100,9 @@ def _term(text: str, term: str, catalogue: Catalogue) -> tuple[float, str]:
     match = _TERM.match(term)
     if match is None:
         raise UnreadableReaction(
-            text, f"“{term}” is not a reactant", "write a catalogue id, with its coefficient before it (2 adp)"
+            text,
+            f"“{term}” is not a reactant",
+            "write a catalogue id, with its coefficient before it (2 adp)",
         )
     metabolite = match[2]
     if metabolite not in catalogue.metabolites:
@@ -130,7 +132,9 @@ def _balance(text: str, stoichiometry: dict[str, float], catalogue: Catalogue) -
     left = [element for element, n in off.items() if abs(n) > 1e-9]
     if left:
         raise UnreadableReaction(
-            text, f"the reaction is not balanced in {', '.join(sorted(left))}", "check coefficients and reactants"
+            text,
+            f"the reaction is not balanced in {', '.join(sorted(left))}",
+            "check coefficients and reactants",
         )
     return water
 

@@ -55,7 +55,13 @@ def read_own_constants(path: Path, catalogue: Catalogue) -> dict[str, OwnConstan
     for line, row in rows:
         step = row["step"].strip()
         if step not in steps:
-            raise _refused(name, line, "step", f"“{step}” is no catalogued step", "use an id that panelview constants prints")
+            raise _refused(
+                name,
+                line,
+                "step",
+                f"“{step}” is no catalogued step",
+                "use an id that panelview constants prints",
+            )
         if step in own:
             raise _refused(name, line, "step", f"{step} is given twice", "keep one row a step")
         column = "delta_g0_prime_kj_per_mol" if has_energy else "k_prime"
@@ -67,7 +73,9 @@ def read_own_constants(path: Path, catalogue: Catalogue) -> dict[str, OwnConstan
         if row.get("sd_kj_per_mol", "").strip():
             sd = _number(name, line, "sd_kj_per_mol", row["sd_kj_per_mol"])
             if sd < 0:
-                raise _refused(name, line, "sd_kj_per_mol", "an uncertainty cannot be negative", "correct the value")
+                raise _refused(
+                    name, line, "sd_kj_per_mol", "an uncertainty cannot be negative", "correct the value"
+                )
         own[step] = OwnConstant(
             step_id=step,
             delta_g0_prime=value if has_energy else None,
@@ -83,7 +91,9 @@ def read_at(path: Path) -> list[AtRow]:
     name = path.name
     header, rows = _table(path)
     if "step" not in header and "reaction" not in header:
-        raise _refused(name, 1, "", "the column step (or reaction) is missing", "name a step or a reaction in each row")
+        raise _refused(
+            name, 1, "", "the column step (or reaction) is missing", "name a step or a reaction in each row"
+        )
     made = []
     for line, row in rows:
         conditions = {}
@@ -95,7 +105,9 @@ def read_at(path: Path) -> list[AtRow]:
                 _check(name, line, field, conditions[field])
         step, reaction = row.get("step", "").strip(), row.get("reaction", "").strip()
         if not step and not reaction:
-            raise _refused(name, line, "step", "neither a step nor a reaction is named", "fill in one of the two")
+            raise _refused(
+                name, line, "step", "neither a step nor a reaction is named", "fill in one of the two"
+            )
         made.append(AtRow(line, step, reaction, conditions))
     return made
 
@@ -113,7 +125,9 @@ def _table(path: Path) -> tuple[Sequence[str], Iterator[tuple[int, dict[str, str
     try:
         text = path.read_bytes().decode("utf-8-sig")
     except OSError as error:
-        raise _refused(name, 0, "", f"the file cannot be read ({error.strerror})", "check the path and its permissions") from error
+        raise _refused(
+            name, 0, "", f"the file cannot be read ({error.strerror})", "check the path and its permissions"
+        ) from error
     except UnicodeDecodeError as error:
         raise _refused(name, 0, "", "the file is not UTF-8 text", "save it as CSV in UTF-8") from error
     reader = csv.reader(io.StringIO(text))
@@ -144,7 +158,9 @@ def _number(name: str, line: int, column: str, text: str) -> float:
     except ValueError:
         value = math.nan
     if not math.isfinite(value):
-        raise _refused(name, line, column, f"“{text.strip()}” is not a number", "write it with a decimal point")
+        raise _refused(
+            name, line, column, f"“{text.strip()}” is not a number", "write it with a decimal point"
+        )
     return value
 
 

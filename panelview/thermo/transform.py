@@ -149,7 +149,7 @@ def reaction_energies(stoichiometry: Array, formation: FormationEnergies) -> For
     """
     return FormationEnergies(
         value=formation.value @ stoichiometry.T,
-        by=np.einsum("crf,sr->csf", formation.by, stoichiometry),
+        by=stoichiometry @ formation.by,
     )
 
 
