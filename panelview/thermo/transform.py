@@ -14,7 +14,11 @@ from numpy.typing import ArrayLike, NDArray
 
 from panelview.thermo.conditions import Conditions
 from panelview.thermo.physical import GAS_CONSTANT, LN10, TABLE_TEMPERATURE
-from panelview.thermo.species import SpeciesTable
+from panelview.thermo.species import (
+    MAGNESIUM_FORMATION_ENERGY,
+    MAGNESIUM_FORMATION_ENTHALPY,
+    SpeciesTable,
+)
 
 Array = NDArray[np.float64]
 
@@ -23,10 +27,6 @@ DEBYE_HUECKEL_B = 1.6
 
 #: RTα(T) as a polynomial in T, kJ/mol per (mol/L)^½: coefficients of T, T², T³ (Alberty 2003, p. 55).
 _RT_ALPHA = (9.20483e-3, -1.28467e-5, 4.95199e-8)
-
-#: Free magnesium ion, 298.15 K, I = 0, kJ/mol (Alberty 2003, table 1.2 and appendix).
-MAGNESIUM_FORMATION_ENERGY = -455.3
-MAGNESIUM_FORMATION_ENTHALPY = -467.0
 
 
 @dataclass(frozen=True)
@@ -74,16 +74,14 @@ def _ionic_factor_slope(ionic_strength: Array) -> Array:
 def formation_energies(table: SpeciesTable, conditions: Conditions) -> FormationEnergies:
     """ΔfG′° = −RT ln Σ exp(−ΔfG′°j/RT) over the species j of each reactant.
 
-    Returns [condition, reactant], kJ/mol. Where a species lacks ΔfH° its energy at 298.15 K is used
-    at every temperature as if ΔfH° equalled ΔfG°: in a reaction this is ΔrS° = 0 for the untransformed
-    species; callers with a measured reaction enthalpy should evaluate at 298.15 K and add their own term.
+    Returns [condition, reactant], kJ/mol. For species without ΔfH° see SpeciesTable.enthalpy.
     Source: Alberty (2003), chapters 3 and 4.
     """
     t = conditions.temperature[:, None]
     rt = GAS_CONSTANT * t
     ratio = t / TABLE_TEMPERATURE
     g0 = table.formation_energy
-    h0 = np.where(np.isfinite(table.formation_enthalpy), table.formation_enthalpy, g0)
+    h0 = table.enthalpy
     z2 = table.charge**2
     n_h, n_mg = table.hydrogen, table.magnesium
 

@@ -9,9 +9,8 @@ from hypothesis import strategies as st
 
 from panelview.thermo.conditions import FIELDS, LIMITS, Conditions, OutOfModelRange
 from panelview.thermo.physical import GAS_CONSTANT, LN10
-from panelview.thermo.species import SpeciesTable
+from panelview.thermo.species import MAGNESIUM_FORMATION_ENERGY, MAGNESIUM_FORMATION_ENTHALPY, SpeciesTable
 from panelview.thermo.transform import (
-    MAGNESIUM_FORMATION_ENERGY,
     bound_hydrogen,
     debye_hueckel_energy,
     formation_energies,
@@ -132,3 +131,17 @@ def test_conditions_outside_the_model_are_refused_by_name(field: str) -> None:
 def test_species_out_of_order_are_refused() -> None:
     with pytest.raises(ValueError, match="sorted"):
         SpeciesTable(("a", "b"), *([np.zeros(2)] * 5), np.array([1, 0]))
+
+
+def test_a_species_without_enthalpy_takes_that_of_its_reactant() -> None:
+    nan = float("nan")
+    table = SpeciesTable(
+        ("known in part", "unknown"),
+        np.array([-100.0, -140.0, -500.0, -30.0]),
+        np.array([-200.0, -220.0, nan, nan]),
+        np.array([-1.0, 0.0, 1.0, 0.0]),
+        np.array([0.0, 1.0, 0.0, 0.0]),
+        np.array([0.0, 0.0, 1.0, 0.0]),
+        np.array([0, 0, 0, 1]),
+    )
+    assert table.enthalpy == pytest.approx([-200, -220, -210 + MAGNESIUM_FORMATION_ENTHALPY, -30])
