@@ -1,0 +1,197 @@
+"""Under the strips, one at a time: redox and energy state, and what was read of the files."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from PySide6.QtCore import (
+    QAbstractTableModel,
+    QModelIndex,
+    QObject,
+    QPersistentModelIndex,
+    QSortFilterProxyModel,
+    Qt,
+)
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QLabel,
+    QSplitter,
+    QTableView,
+    QTabWidget,
+    QVBoxLayout,
+    QWidget,
+)
+
+from panelview.assess.review import Review, StateRow
+from panelview.desktop.reading_report import (
+    PROBLEM_HEADINGS,
+    VALUE_HEADINGS,
+    problem_rows,
+    summary,
+    value_rows,
+)
+from panelview.desktop.reviewing import Reviewing
+from panelview.output.text import quantity_name, shown_id, state_interval, state_value
+
+Index = QModelIndex | QPersistentModelIndex
+
+STATE_HEADINGS = ("Quantity", "Compartment", "From", "Value", "95 % interval", "Validity", "What to know")
+
+
+def state_texts(review: Review, row: StateRow) -> tuple[str, ...]:
+    """One line of the state table."""
+    enzyme = next((s.short for s in review.catalogue.steps if s.id == row.couple), "")
+    name = quantity_name(row.quantity)
+    return (
+        name[:1].upper() + name[1:],
+        shown_id(row.compartment),
+        enzyme,
+        state_value(row.value, row.unit),
+        state_interval(row.lower95, row.upper95, row.unit),
+        shown_id(row.validity),
+        row.reason,
+    )
+
+
+class TextTable(QAbstractTableModel):
+    """Rows of texts under headings."""
+
+    def __init__(self, headings: tuple[str, ...], parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._headings = headings
+        self._rows: list[tuple[str, ...]] = []
+
+    def show(self, rows: list[tuple[str, ...]]) -> None:
+        self.beginResetModel()
+        self._rows = rows
+        self.endResetModel()
+
+    @property
+    def rows(self) -> list[tuple[str, ...]]:
+        return self._rows
+
+    @property
+    def headings(self) -> tuple[str, ...]:
+        return self._headings
+
+    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+        return 0 if parent.isValid() else len(self._rows)
+
+    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+        return 0 if parent.isValid() else len(self._headings)
+
+    def headerData(
+        self, section: int, orientation: Qt.Orientation, role: int = Qt.ItemDataRole.DisplayRole
+    ) -> Any:
+        if orientation is Qt.Orientation.Horizontal and role == Qt.ItemDataRole.DisplayRole:
+            return self._headings[section]
+        if orientation is Qt.Orientation.Horizontal and role == Qt.ItemDataRole.TextAlignmentRole:
+            return Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
+        return None
+
+    def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
+        if not index.isValid():
+            return None
+        text = self._rows[index.row()][index.column()]
+        if role in (Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole):
+            return text
+        if role == Qt.ItemDataRole.AccessibleTextRole:
+            return f"{self._headings[index.column()]}: {text or 'none'}"
+        return None
+
+
+class TextTableView(QTableView):
+    """A plain table of a `TextTable`; the last column takes the room that is left."""
+
+    def __init__(self, model: TextTable, name: str, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.texts = model
+        proxy = QSortFilterProxyModel(self)
+        proxy.setSourceModel(model)
+        self.setModel(proxy)
+        self.setAccessibleName(name)
+        self.verticalHeader().hide()
+        self.verticalHeader().setDefaultSectionSize(self.fontMetrics().height() + 8)
+        self.horizontalHeader().setStretchLastSection(True)
+        self.horizontalHeader().setHighlightSections(False)
+        self.setShowGrid(False)
+        self.setAlternatingRowColors(True)
+        self.setFrameShape(QTableView.Shape.NoFrame)
+        self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
+        self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+        self.setTabKeyNavigation(False)
+        self.setWordWrap(False)
+        model.modelReset.connect(self._fit)
+
+    def _fit(self) -> None:
+        """Widths from the first rows' texts, no column wider than a third of the table."""
+        header = self.horizontalHeader()
+        header.setResizeContentsPrecision(60)
+        self.resizeColumnsToContents()
+        widest = max(self.viewport().width() // 3, 120)
+        for column in range(self.texts.columnCount() - 1):
+            self.setColumnWidth(column, min(self.columnWidth(column) + 8, widest))
+
+
+class BelowView(QTabWidget):
+    """Tabs: state of the chosen specimen; what was read."""
+
+    def __init__(self, reviewing: Reviewing, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._reviewing = reviewing
+        self.setDocumentMode(True)
+        self.setAccessibleName("State and reading report")
+        self.state = TextTableView(TextTable(STATE_HEADINGS), "Redox and energy state", self)
+        self.problems = TextTableView(TextTable(PROBLEM_HEADINGS), "Problems and assumptions", self)
+        self.values = TextTableView(TextTable(VALUE_HEADINGS), "Values as reported and as used", self)
+        self.summary = QLabel()
+        self.summary.setWordWrap(True)
+        self.summary.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self._values_for: object = None
+        self.addTab(self.state, "Redox and energy state")
+        self.addTab(self._reading_page(), "What was read")
+        reviewing.opened.connect(self._show_new)
+        reviewing.reviewed.connect(self._show_state)
+        reviewing.specimen_changed.connect(self._show_state)
+        self.currentChanged.connect(lambda _: self._fill_values())
+
+    def _reading_page(self) -> QWidget:
+        page = QWidget()
+        split = QSplitter(Qt.Orientation.Horizontal)
+        split.addWidget(self.problems)
+        split.addWidget(self.values)
+        split.setSizes([500, 500])
+        layout = QVBoxLayout(page)
+        layout.setContentsMargins(6, 4, 6, 0)
+        layout.setSpacing(4)
+        layout.addWidget(self.summary)
+        layout.addWidget(split, 1)
+        return page
+
+    def show_reading(self) -> None:
+        """Bring the reading report to the front."""
+        self.setCurrentIndex(1)
+        self.problems.setFocus()
+
+    def _show_new(self) -> None:
+        self._show_state()
+        review = self._reviewing.review
+        assert review is not None
+        self.summary.setText(summary(review.panel))
+        problems = problem_rows(review.panel)
+        self.problems.texts.show(problems)
+        self.setTabText(1, f"What was read ({len(problems)} remarks)" if problems else "What was read")
+        self._fill_values()
+
+    def _fill_values(self) -> None:
+        """The values are listed when they are first looked at: a cohort has very many."""
+        review = self._reviewing.review
+        if self.currentIndex() == 1 and review is not None and self._values_for is not review.panel:
+            self._values_for = review.panel
+            self.values.texts.show(value_rows(review.panel))
+
+    def _show_state(self) -> None:
+        review = self._reviewing.review
+        assert review is not None
+        rows = [state_texts(review, row) for row in review.state_of(self._reviewing.specimen)]
+        self.state.texts.show(rows)

@@ -1,0 +1,180 @@
+"""The evidence for a step laid out as rich text: the texts are the evidence's own, this only arranges them."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from html import escape
+
+from panelview.assess.drivers import Driver
+from panelview.assess.effectors import EffectorFinding
+from panelview.assess.evidence import Evidence, Term
+from panelview.catalogue.measurements import MeasuredConstant
+from panelview.desktop.palette import Colours
+from panelview.output.text import concentration, fixed, relative, signed, significant
+from panelview.thermo.physical import ZERO_CELSIUS
+
+#: Where each kind of value comes from, as a mark beside its words: solid for measured, hollow for inferred.
+_MARKS = {
+    "measured": "●",
+    "measured total": "◐",
+    "free, inferred": "◇",
+    "set by the reviewer": "✎",
+    "below LOQ": "‹",
+    "above range": "›",
+    "missing": "–",
+    "unit activity": "1",
+}
+
+#: So many measurements are listed; the rest are counted.
+MOST_MEASUREMENTS = 8
+
+#: Scheme of the pictures of driver bars: `bar:contribution/largest`.
+BAR_SCHEME = "bar"
+
+
+def evidence_html(evidence: Evidence, colours: Colours) -> str:
+    """The whole panel as HTML that QTextDocument knows."""
+    parts = [
+        f"<h2>{escape(evidence.title)}</h2>",
+        f'<p class="call">{escape(_capital(evidence.call))}</p>',
+        f"<p>{escape(evidence.sentence)}</p>",
+        _equation(evidence),
+        _terms(evidence.terms),
+        _drivers(evidence.drivers),
+        _effectors(evidence.effectors, evidence.regulation),
+        _constant(evidence),
+        _list("Free pools", evidence.pools),
+        _list("Cautions", evidence.cautions),
+    ]
+    return f"<style>{_css(colours)}</style>" + "".join(p for p in parts if p)
+
+
+def _css(colours: Colours) -> str:
+    return (
+        f"h2 {{ font-size: large; margin: 0 0 2px 0; color: {colours.text}; }}"
+        f"h3 {{ font-size: medium; margin: 14px 0 3px 0; color: {colours.muted}; }}"
+        f"p {{ margin: 3px 0; color: {colours.text}; }}"
+        f".call {{ font-weight: bold; font-size: medium; margin: 2px 0 6px 0; }}"
+        f".muted, th {{ color: {colours.muted}; font-weight: normal; }}"
+        f".caution {{ color: {colours.caution}; }}"
+        f"td, th {{ padding: 2px 10px 2px 0; text-align: left; vertical-align: top; }}"
+        f"li {{ margin: 2px 0; color: {colours.text}; }}"
+    )
+
+
+def _equation(evidence: Evidence) -> str:
+    numbers = f'<p class="muted">{escape(evidence.equation_numbers)}</p>' if evidence.equation_numbers else ""
+    return f"<h3>Equation</h3><p>{escape(evidence.equation)}</p>{numbers}"
+
+
+def _terms(terms: Sequence[Term]) -> str:
+    rows = "".join(_term(t) for t in terms if t.origin != "unit activity")
+    if not rows:
+        return ""
+    head = "<tr><th>Reactant</th><th>Used, as reported</th><th>Reference</th></tr>"
+    return f"<h3>Reactants</h3><table cellspacing='0' width='100%'>{head}{rows}</table>"
+
+
+def _term(term: Term) -> str:
+    times = f"{signed(term.nu, 0)} " if term.nu else "through the pool: "
+    mark = _MARKS.get(term.origin, "")
+    used = concentration(term.concentration)
+    if used and math.isfinite(term.sd_ln):
+        used += f" ± {relative(term.sd_ln)}"
+    used = {"below LOQ": "under ", "above range": "over "}.get(term.origin, "") + used if used else "no value"
+    reported = f'<br><span class="muted">{escape(term.reported)}</span>' if term.reported else ""
+    reference = concentration(term.reference) or "none"
+    turning = ""
+    if math.isfinite(term.turning_point):
+        factor = term.turning_point / term.concentration
+        turning = (
+            f'<br><span class="muted">equilibrium at {escape(concentration(term.turning_point))}'
+            f" ({_factor(factor)})</span>"
+        )
+    return (
+        f"<tr><td><b>{escape(term.symbol)}</b><br>"
+        f'<span class="muted">{times}{mark} {escape(term.origin)}</span></td>'
+        f"<td>{escape(used)}{reported}</td><td>{escape(reference)}{turning}</td></tr>"
+    )
+
+
+def _factor(factor: float) -> str:
+    return f"× {significant(factor, 2)}" if factor < 1e4 else "far off"
+
+
+def _drivers(drivers: Sequence[Driver]) -> str:
+    if not drivers:
+        return ""
+    largest = max(abs(d.contribution) for d in drivers) or 1.0
+    rows = "".join(
+        f"<tr><td>{escape(d.label)}</td>"
+        f"<td><img src='{BAR_SCHEME}:{d.contribution:.4f}/{largest:.4f}'></td>"
+        f"<td align='right'>{escape(signed(d.contribution))}</td></tr>"
+        for d in drivers
+    )
+    total = math.fsum(d.contribution for d in drivers)
+    return (
+        "<h3>What carries the shift, kJ/mol</h3>"
+        f"<table cellspacing='0'>{rows}<tr><td><b>sum</b></td><td></td>"
+        f"<td align='right'><b>{signed(total)}</b></td></tr></table>"
+    )
+
+
+def _effectors(effectors: Sequence[EffectorFinding], regulation: str) -> str:
+    if not effectors and not regulation:
+        return ""
+    rows = "".join(
+        f"<tr><td>{escape(_capital(e.effector.replace('_', ' ')))} {escape(e.effect)}<br>"
+        f'<span class="muted">{escape(", ".join(w for w in (e.kind, e.tissue) if w))}</span></td>'
+        f"<td>{escape(e.finding)}{_detail(e.detail)}</td></tr>"
+        for e in effectors
+    )
+    table = f"<table cellspacing='0' width='100%'>{rows}</table>" if rows else ""
+    level = f"<p class='muted'>{escape(_capital(regulation))}</p>" if regulation else ""
+    return f"<h3>Substrate or enzyme: known effectors</h3>{table}{level}"
+
+
+def _detail(detail: str) -> str:
+    return f'<br><span class="muted">{escape(detail)}</span>' if detail else ""
+
+
+def _constant(evidence: Evidence) -> str:
+    count = len(evidence.measurements)
+    measured = (
+        f"{count} measurement{'' if count == 1 else 's'} on record" if count else "no measurement on record"
+    )
+    rows = "".join(_measurement(m) for m in evidence.measurements[:MOST_MEASUREMENTS])
+    head = "<tr><th>K′</th><th>pH</th><th>°C</th><th>I</th><th>pMg</th><th>source</th></tr>"
+    table = f"<table cellspacing='0' width='100%'>{head}{rows}</table>" if rows else ""
+    rest = count - MOST_MEASUREMENTS
+    more = f"<p class='muted'>and {rest} more</p>" if rest > 0 else ""
+    return (
+        f"<h3>What K′eq rests on</h3><p>{escape(evidence.constant)}</p>"
+        f"<p class='muted'>{escape(_capital(evidence.constant_basis))}; {measured}. "
+        f"Source: {escape(evidence.constant_source)}</p>{table}{more}"
+    )
+
+
+def _measurement(m: MeasuredConstant) -> str:
+    out = " (set aside)" if m.set_aside else ""
+    cells = (
+        significant(m.k_prime, 3) if 1e-3 <= m.k_prime < 1e5 else f"{m.k_prime:.2e}".replace("e-", "e−"),
+        fixed(m.ph, 2),
+        fixed(m.temperature - ZERO_CELSIUS, 0),
+        fixed(m.ionic_strength, 2),
+        fixed(m.pmg, 1),
+        f"{m.reference_id} {m.evaluation}{out}".strip(),
+    )
+    return "<tr>" + "".join(f"<td>{escape(c)}</td>" for c in cells) + "</tr>"
+
+
+def _list(title: str, texts: Sequence[str]) -> str:
+    if not texts:
+        return ""
+    items = "".join(f"<li>{escape(_capital(t))}</li>" for t in texts)
+    return f"<h3>{title}</h3><ul style='margin-left: -24px'>{items}</ul>"
+
+
+def _capital(text: str) -> str:
+    return text[:1].upper() + text[1:]

@@ -1,0 +1,40 @@
+"""The invented studies that ship with the program, as the window offers them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from pathlib import Path
+
+from panelview.resource_files import sample_data
+
+
+@dataclass(frozen=True, slots=True)
+class Sample:
+    """file: name in the sample folder; title, story: what the reader is offered."""
+
+    file: str
+    title: str
+    story: str
+
+
+SAMPLES = (
+    Sample(
+        "red_cells.csv",
+        "Red cells",
+        "Four participants against 24 controls: which step of glycolysis is held back?",
+    ),
+    Sample(
+        "plasma_series.csv",
+        "Plasma, a series of days",
+        "Lactate, pyruvate and ketone bodies over days: how does redox move?",
+    ),
+    Sample(
+        "muscle_exercise.csv",
+        "Muscle biopsies",
+        "At rest and after exercise: which steps move, and does the energy state hold?",
+    ),
+)
+
+
+def sample_path(sample: Sample) -> Path:
+    return sample_data() / sample.file
