@@ -47,7 +47,7 @@ _TALLEST = 96.0
 
 _LEGEND = (
     "▲ pushed back, ▼ pushed forward, with the shift in kJ/mol: filled and on grey where highlighted, △ ▽ where "
-    "significant but under the floor. · as usual. Without a reference: fwd forward, rev reversed, und undecided, "
+    "significant but under the floor. • as usual. Without a reference: fwd forward, rev reversed, und undecided, "
     "? no constant known. In brackets: a proxy. – not measured; blank: not assessable in that matrix. "
     "≥, ≤: a bound from a value beyond a limit of quantification. def: defines the free pool."
 )
@@ -85,14 +85,21 @@ def _overview(review: Review) -> list[Flowable]:
     if not columns:
         return [*story, paragraph("No step can be read in any specimen.")]
     story += [paragraph(_LEGEND, SMALL), gap(4)]
-    at_once = int((_WIDTH - _LABEL) // _NARROWEST)
-    for start in range(0, len(review.specimens), at_once):
-        block = range(start, min(start + at_once, len(review.specimens)))
+    for block in _blocks(review):
         story += [_matrix(review, columns, block), gap(8)]
     return story
 
 
-def _matrix(review: Review, columns: Sequence[int], specimens: range) -> Flowable:
+def _blocks(review: Review) -> list[list[int]]:
+    """Specimens in blocks of equal width that fit the sheet; controls of the study come last."""
+    controls = set(review.reference.specimens)
+    order = sorted(range(len(review.specimens)), key=lambda i: i in controls)
+    count = math.ceil(len(order) / ((_WIDTH - _LABEL) // _NARROWEST))
+    size = math.ceil(len(order) / count)
+    return [order[start : start + size] for start in range(0, len(order), size)]
+
+
+def _matrix(review: Review, columns: Sequence[int], specimens: Sequence[int]) -> Flowable:
     width = min((_WIDTH - _LABEL) / len(specimens), _WIDEST)
     height = min(max(stringWidth(review.specimens[i].code, BOLD, 6.6) for i in specimens) + 6, _TALLEST)
     heads = [_TurnedText(review.specimens[i].code, width, height) for i in specimens]
@@ -129,7 +136,7 @@ def _shift_mark(review: Review, specimen: int, column: int) -> str:
     at = specimen, column
     call = Shift(int(f.shift_call[at]))
     if call == Shift.WITHIN:
-        return "·"
+        return "•"
     if call == Shift.NO_REFERENCE:
         if f.defines_pool[at]:
             return "def"

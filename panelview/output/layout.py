@@ -45,7 +45,16 @@ SMALL_STRONG = _style("small strong", 6.6, fontName=BOLD)
 TINY = _style("tiny", 5.9)
 CALL = _style("call", 9, fontName=BOLD)
 CALL_RIGHT = _style("call right", 9, fontName=BOLD, alignment=TA_RIGHT)
-BOXED = _style("boxed", 8.4, fontName=BOLD, borderColor=black, borderWidth=0.9, borderPadding=(3.5, 5, 4.5, 5))
+BOXED = _style(
+    "boxed",
+    8.4,
+    fontName=BOLD,
+    borderColor=black,
+    borderWidth=0.9,
+    borderPadding=(3.5, 5, 4.5, 5),
+    leftIndent=5.5,
+    rightIndent=5.5,
+)
 
 
 def plain(text: str) -> str:

@@ -10,12 +10,12 @@ from reportlab.platypus import Flowable
 from panelview.assess import calls
 from panelview.assess.review import Review
 from panelview.intake.panel import State
-from panelview.output.labels import step_name
+from panelview.output.labels import matrix_name, step_name
 from panelview.output.layout import SMALL, facts, paragraph, section, small_table
 from panelview.output.page_head import readings_of
 from panelview.output.page_steps import readable_columns
 from panelview.output.sheet import WIDTH
-from panelview.output.text import concentration, condition, ratio_from_ln, relative, with_sd
+from panelview.output.text import concentration, condition, fixed, interval, ratio_from_ln, relative, with_sd
 from panelview.thermo.conditions import FIELDS, LABELS
 
 _NO_VALUE = {
@@ -92,9 +92,11 @@ def constants_used(review: Review, specimen: int) -> list[Flowable]:
     if not rows:
         return [*story, paragraph("No step was read, so no constant was used.")]
     headings = ("Step", "K′eq", "ΔrG′°, kJ/mol", "Basis", "Source", "Remark")
+    anchors = review.catalogue.constants.anchors
+    sources = dict.fromkeys(anchors[s].source for s in sorted(used) if anchors[s].source)
     lead = (
         f"At {conditions}. K′eq in powers of mol/L, water left out; ± is the standard uncertainty of the constant. "
-        "Codes of sources are those of the database of measured constants named in the catalogue."
+        f"Source codes and constants are from: {'; '.join(sources) or 'no source stated'}."
     )
     return [*story, paragraph(lead, SMALL), small_table(headings, rows, (88, 52, 62, 56, 140, WIDTH - 398))]
 
@@ -119,11 +121,41 @@ def _constant(review: Review, specimen: int, column: int) -> tuple[str, ...]:
     )
 
 
-def reference_and_provenance(review: Review) -> list[Flowable]:
-    """The reference, what the calls mean, and the files and versions behind the page."""
+def reference_of_steps(review: Review, specimen: int) -> list[Flowable]:
+    """What the reference says of each readable step: number, mean, spread, 95 % limits."""
+    f = review.findings
+    rows = []
+    for c in readable_columns(review, specimen):
+        n, sd = int(f.reference_n[specimen, c]), float(f.reference_sd[specimen, c])
+        if not n and not math.isfinite(sd):
+            continue
+        rows.append(
+            (
+                step_name(review, c),
+                str(n) if n else "not stated",
+                with_sd(float(f.reference_mean[specimen, c]), sd) or f"position not known ± {fixed(sd, 1)}",
+                interval(float(f.reference_lower[specimen, c]), float(f.reference_upper[specimen, c])) or "–",
+                interval(float(f.band_lower[specimen, c]), float(f.band_upper[specimen, c])) or "–",
+            )
+        )
+    story = section("Appendix C. Reference of each step")
+    if not rows:
+        return [*story, paragraph("No step could be compared with a reference.")]
+    label = review.reference.label
+    lead = (
+        f"{label[:1].upper()}{label[1:]}; matrix: {matrix_name(review, specimen)}. Limits are the 2.5th and 97.5th "
+        f"percentiles; none are claimed under {calls.LEAST_CONTROLS_FOR_INTERVAL} controls. A control is compared "
+        "with the others, never with itself."
+    )
+    headings = ("Step", "n", "Mean ΔG′ ± SD, kJ/mol", "95 % limits of ΔG′", "95 % limits of the shift")
+    widths = (130, 60, 120, 100, WIDTH - 410)
+    return [*story, paragraph(lead, SMALL), small_table(headings, rows, widths)]
+
+
+def provenance(review: Review) -> list[Flowable]:
+    """What the calls mean, and the files and versions behind the page."""
     constants = review.catalogue.constants
     rows = [
-        ("Reference", review.reference.label),
         ("Limits", _limits(review)),
         *(
             (f"Input file {k}", f"{s.name}, {s.size} bytes, SHA-256 {s.sha256}")
@@ -137,7 +169,7 @@ def reference_and_provenance(review: Review) -> list[Flowable]:
     own = [f"{s}: {o.source or 'no source given'}" for s, o in sorted(constants.own.items())]
     if own:
         rows.append(("Own constants", "; ".join(own)))
-    return [*section("Appendix C. Reference, limits, provenance"), facts(rows, (74, WIDTH - 80))]
+    return [*section("Appendix D. Limits and provenance"), facts(rows, (74, WIDTH - 80))]
 
 
 def _limits(review: Review) -> str:

@@ -97,7 +97,7 @@ def _specimen_and_conditions(review: Review, specimen: int) -> Table:
         *((label[0].upper() + label[1:], NOT_RECORDED) for label in _HANDLING),
         ("Read from", f"{facts_.source}, row {facts_.row}"),
     ]
-    left = [paragraph("Specimen", SMALL_STRONG), gap(1), facts(rows, (104, half - 116))]
+    left = [paragraph("Specimen", SMALL_STRONG), gap(1), facts(rows, (122, half - 134))]
     right = [
         paragraph("Conditions, ± standard uncertainty, and their origin", SMALL_STRONG),
         gap(1),
@@ -169,8 +169,8 @@ _STATE_WORDS = {
     State.BELOW_LOQ: "below the limit of quantification",
     State.ABOVE_RANGE: "above the measuring range",
     State.MISSING: "empty or not determined",
-    State.SUM: "sums that are not split",
-    State.UNMATCHED: "names not matched",
+    State.SUM: "a sum that is not split",
+    State.UNMATCHED: "of an unknown name",
     State.REFUSED: "refused",
 }
 

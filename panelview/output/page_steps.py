@@ -31,6 +31,8 @@ from panelview.output.strips import StripDrawing
 from panelview.output.text import bounds, ratio_from_ln
 
 _STRIP_HEIGHT = 17.0
+#: Empty room at each side of a strip, pt.
+_BESIDE = 3.0
 _STEP, _RATIO, _ENERGY, _CALL = 112.0, 50.0, 74.0, 60.0
 
 
@@ -80,7 +82,7 @@ def _legend(review: Review, specimen: int) -> str:
 def _table(review: Review, specimen: int, columns: list[int], axes: Axes) -> Flowable:
     shown = (Axis.DISTANCE, Axis.SHIFT) if has_shift(review, specimen) else (Axis.DISTANCE,)
     room = WIDTH - _STEP - _RATIO - _ENERGY - _CALL
-    width = room / len(shown)
+    width = room / len(shown) - 2 * _BESIDE
     heads = [
         paragraph("Step", SMALL_STRONG),
         *(axes.drawing(axis, width) for axis in shown),
@@ -90,8 +92,8 @@ def _table(review: Review, specimen: int, columns: list[int], axes: Axes) -> Flo
     ]
     rows: list[list[Flowable | str]] = [heads]
     extra: list[tuple[object, ...]] = []
-    for strip_column in range(1, 1 + len(shown)):
-        extra += [(side, (strip_column, 0), (strip_column, -1), 0) for side in ("LEFTPADDING", "RIGHTPADDING")]
+    for side in ("LEFTPADDING", "RIGHTPADDING"):
+        extra.append((side, (1, 0), (len(shown), -1), _BESIDE))
     for pathway, of_pathway in _grouped(review, columns):
         at = len(rows)
         rows.append([paragraph(_heading(pathway), SMALL_STRONG), *[""] * (len(heads) - 1)])
@@ -102,7 +104,7 @@ def _table(review: Review, specimen: int, columns: list[int], axes: Axes) -> Flo
         ]
         rows += [_row(review, specimen, c, axes, shown, width) for c in of_pathway]
     extra.append(("VALIGN", (0, 1), (-1, -1), "MIDDLE"))
-    return table(rows, [_STEP, *[width] * len(shown), _RATIO, _ENERGY, _CALL], extra=extra)
+    return table(rows, [_STEP, *[width + 2 * _BESIDE] * len(shown), _RATIO, _ENERGY, _CALL], extra=extra)
 
 
 def _heading(pathway: str) -> str:

@@ -11,7 +11,7 @@ from reportlab.platypus import Flowable, PageBreak
 from panelview.assess.review import Review
 from panelview.output.fonts import register_fonts
 from panelview.output.labels import matrix_name, versions
-from panelview.output.page_appendix import constants_used, reference_and_provenance, reported_values
+from panelview.output.page_appendix import constants_used, provenance, reference_of_steps, reported_values
 from panelview.output.page_calls import Axes, calls
 from panelview.output.page_end import cautions, discussion, signatures, state
 from panelview.output.page_head import head, notes, printed
@@ -43,7 +43,8 @@ def _story(review: Review, specimen: int, when: datetime | None) -> list[Flowabl
         *reported_values(review, specimen),
         *notes(review, specimen),
         *constants_used(review, specimen),
-        *reference_and_provenance(review),
+        *reference_of_steps(review, specimen),
+        *provenance(review),
     ]
 
 

@@ -182,7 +182,9 @@ def _interval(lower: float, upper: float, shown: Callable[[float], str]) -> str:
         return f"at most {shown(upper)}"
     if math.isinf(upper):
         return f"at least {shown(lower)}"
-    return f"{shown(lower)} to {shown(upper)}"
+    first, last = shown(lower), shown(upper)
+    unit = last[last.index(" ") :] if " " in last else ""
+    return f"{first.removesuffix(unit)} to {last}"
 
 
 def concentration(mol_per_l: float, digits: int = 3) -> str:
