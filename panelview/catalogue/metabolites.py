@@ -30,16 +30,20 @@ class Metabolite:
 
 @dataclass(frozen=True, slots=True)
 class Name:
-    """One spelling a laboratory may use and the metabolites it may mean.
+    """One spelling a laboratory may use and the analytes it may mean.
 
-    text: as written; candidates: metabolite ids; more than one means that the name alone does not
-    tell (never guessed); is_sum: the signal is the sum of the candidates (hexose phosphates).
+    text: as written; candidates: ids of metabolites or of known analytes outside the catalogue; more
+    than one means that the name alone does not tell (never guessed); is_sum: the signal is the sum of
+    the candidates (hexose phosphates); molar_mass: g/mol to be used for a mass reported under this
+    name, where custom weighs something else than the whole molecule (urea nitrogen, phosphate as
+    phosphorus), else None.
     """
 
     text: str
     candidates: tuple[str, ...]
     is_sum: bool
     source: str
+    molar_mass: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
