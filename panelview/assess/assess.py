@@ -63,7 +63,7 @@ def assess(panel: Panel, catalogue: Catalogue, settings: Settings = _DEFAULT_SET
         conditions=conditions,
         condition_origin=origins,
         columns=columns,
-        findings=board.findings(settings.shift_floor),
+        findings=board.findings(columns, settings.shift_floor),
         reasons=readability.texts(),
         concentrations=used,
         plans=plans,
@@ -114,7 +114,7 @@ class _Board:
         self.band_lower, self.band_upper = nothing(), nothing()
         self.shift, self.shift_sd, self.p = nothing(), nothing(), nothing()
         self.shift_lower, self.shift_upper = nothing(), nothing()
-        self.at_limit = nothing()
+        self.at_limit, self.ln_ratio = nothing(), nothing()
         self.tested, self.censored, self.inferred, self.defines = no(), no(), no(), no()
 
     def fill_constants(self, columns: tuple[StepColumn, ...], constants: ConditionConstants) -> None:
@@ -143,6 +143,7 @@ class _Board:
         self.p_reversed[at] = np.where(is_open, np.nan, p)
         self.p_near[at] = np.where(is_open, np.nan, verdicts.probability_near(g, sd, rt))
         self.direction[at] = verdicts.directions(p, below, above)
+        self.ln_ratio[at] = g / rt
         self.distance[at] = verdicts.distances(g / rt, below, above)
         self.censored[at] = is_open & readable
         self.inferred[at] = plan.inferred[action.active] & has_value
@@ -181,10 +182,12 @@ class _Board:
         self.tested[at] = reference.tested & np.isfinite(difference)
         self.at_limit[at] = difference
 
-    def findings(self, shift_floor: float) -> Findings:
+    def findings(self, columns: tuple[StepColumn, ...], shift_floor: float) -> Findings:
         """Close the board: false discovery rate over each specimen, calls, highlights."""
         q = verdicts.false_discovery(self.p)
         call = verdicts.shift_calls(self.at_limit, q, self.tested)
+        either = np.array([column.step.usual_direction == "either" for column in columns], dtype=bool)
+        direction = verdicts.without_usual_direction(self.direction, either, self.ln_ratio, call)
         moved = (q <= FALSE_DISCOVERY_RATE) & (np.abs(self.at_limit) >= shift_floor)
         return Findings(
             assessability=self.readability,
@@ -199,7 +202,7 @@ class _Board:
             delta_g_upper95=self.upper,
             p_reversed=self.p_reversed,
             p_near=self.p_near,
-            direction=self.direction,
+            direction=direction,
             distance=self.distance,
             reference_n=self.n,
             reference_mean=self.mean,

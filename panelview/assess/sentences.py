@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 
-from panelview.assess.calls import Assessability, Direction, Distance, Shift
+from panelview.assess.calls import DIRECTION_LEVEL, Assessability, Direction, Distance, Shift
 from panelview.assess.drivers import Driver
 from panelview.assess.review import Review
 
@@ -141,7 +141,12 @@ def _position_sentence(review: Review, specimen: int, column: int) -> str:
         Distance.FAR: "far from equilibrium",
         Distance.NONE: "",
     }[distance]
-    return f"ΔG′ is {signed(g)} ± {sd:.1f} kJ/mol, {place}; {_direction_told(direction)}."
+    told = _direction_told(direction)
+    if direction == Direction.UNDECIDED and f.p_reversed[specimen, column] >= DIRECTION_LEVEL:
+        told = (
+            "above zero, but the step has no usual direction and is not pushed back enough to say that it is turned"
+        )
+    return f"ΔG′ is {signed(g)} ± {sd:.1f} kJ/mol, {place}; {told}."
 
 
 def _direction_told(direction: Direction) -> str:

@@ -45,6 +45,19 @@ def directions(p_reversed: Array, open_below: Flags, open_above: Flags) -> Codes
     return np.where(np.isfinite(p_reversed), code, Direction.NONE).astype(np.int8)
 
 
+def without_usual_direction(direction: Codes, either: Flags, ln_ratio: Array, shift_call: Codes) -> Codes:
+    """Take back “reversed” from steps that have no usual direction, unless more than the sign supports it.
+
+    Such a step counts as reversed only if it is also pushed back against the reference, or, where nothing
+    can be compared, if Γ/K′eq lies outside the near-equilibrium zone: in published tables healthy
+    isomerases lie up to 3 kJ/mol above zero through the errors of constants and assays alone.
+    either: [column]; ln_ratio: ln(Γ/K′eq), at the limit where censored; the others [specimen, column].
+    """
+    supported = np.where(shift_call == Shift.NO_REFERENCE, ln_ratio > LN_NEAR, shift_call == Shift.PUSHED_BACK)
+    taken_back = either & (direction == Direction.REVERSED) & ~supported
+    return np.where(taken_back, Direction.UNDECIDED, direction).astype(np.int8)
+
+
 def distances(ln_ratio: Array, open_below: Flags, open_above: Flags) -> Codes:
     """Near, between or far by ln(Γ/K′eq); with a side open, only "far" can be true of every value."""
     size = np.abs(ln_ratio)

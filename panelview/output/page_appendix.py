@@ -175,7 +175,9 @@ def provenance(review: Review) -> list[Flowable]:
 def _limits(review: Review) -> str:
     level = calls.DIRECTION_LEVEL
     return (
-        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, else undecided. "
+        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, else undecided; "
+        "a step without a usual direction is called reversed only if it is also pushed back against the reference "
+        f"or, without one, if Γ/K′eq exceeds {calls.NEAR_FACTOR:g}. "
         f"Distance: near where Γ/K′eq lies within 1/{calls.NEAR_FACTOR:g} and {calls.NEAR_FACTOR:g}, far beyond "
         f"1/{calls.FAR_FACTOR:g} or {calls.FAR_FACTOR:g}. Shift: at a false discovery rate of "
         f"{100 * calls.FALSE_DISCOVERY_RATE:g} % over the specimen's steps; highlighted from "
