@@ -12,6 +12,7 @@ from PySide6.QtCore import (
     QSortFilterProxyModel,
     Qt,
 )
+from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QLabel,
@@ -122,6 +123,11 @@ class TextTableView(QTableView):
         self.setTabKeyNavigation(False)
         self.setWordWrap(False)
         model.modelReset.connect(self._fit)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        if event.oldSize().width() != event.size().width():
+            self._fit()
 
     def _fit(self) -> None:
         """Widths from the first rows' texts, no column wider than a third of the table."""

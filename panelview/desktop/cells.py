@@ -24,6 +24,9 @@ class Cell(IntEnum):
     CALL = 6
 
 
+#: Columns of numbers, set to the right.
+NUMBERS = (Cell.GAMMA, Cell.K_PRIME, Cell.DELTA_G, Cell.SHIFT)
+
 HEADINGS = {
     Cell.STEP: "Step",
     Cell.STRIP: "Balance strip",

@@ -15,6 +15,7 @@ from panelview.desktop.notices import Severity
 from panelview.desktop.reading_report import left_out
 from panelview.desktop.samples import SAMPLES, sample_path
 from panelview.desktop.theme import Choice
+from panelview.output.file_names import safe_name
 from panelview.output.scale import Axis
 
 if TYPE_CHECKING:
@@ -144,15 +145,14 @@ class Desk:
         assert review is not None
         out = left_out(review.panel)
         if out:
-            some = "1 value or specimen was" if out == 1 else f"{out} values or specimens were"
             self._window.notice.tell(
                 Severity.CAUTION,
-                f"{some} left out while reading; each is listed with its row, column and a way out.",
+                f"Left out while reading: {out}. Each is listed with its row, its column and a way out.",
                 "What was read",
                 self.show_reading,
             )
         off = int(review.findings.highlighted.sum())
-        self._window.bottom.say(f"{len(review.specimens)} specimens read, {off} steps off")
+        self._window.bottom.say(f"{len(review.specimens)} specimens read, {off} steps off in all")
 
     def show_reading(self) -> None:
         self._window.actions_["show_below"].setChecked(True)
@@ -181,7 +181,7 @@ class Desk:
         reviewing = self._window.reviewing
         assert reviewing.review is not None
         code = reviewing.review.specimens[reviewing.specimen].code
-        path = self._ask_target("Export page", f"{_file_stem(code)}.pdf", "PDF (*.pdf)")
+        path = self._ask_target("Export page", f"{safe_name(code)}.pdf", "PDF (*.pdf)")
         if path is not None:
             self.write_page(path)
 
@@ -216,7 +216,7 @@ class Desk:
         reviewing = self._window.reviewing
         assert reviewing.review is not None
         code = reviewing.review.specimens[reviewing.specimen].code
-        path = self._ask_target("Export strips", f"{_file_stem(code)}-strips.svg", "SVG (*.svg);;PNG (*.png)")
+        path = self._ask_target("Export strips", f"{safe_name(code)}-strips.svg", "SVG (*.svg);;PNG (*.png)")
         if path is not None:
             self.write_figure(path)
 
@@ -353,11 +353,6 @@ class Desk:
         dialog = HelpDialog(title, html, self._window)
         dialog.finished.connect(dialog.deleteLater)
         dialog.open()
-
-
-def _file_stem(code: str) -> str:
-    """A specimen's code as a file name."""
-    return "".join(c if c.isalnum() or c in "-_." else "_" for c in code).strip(".") or "specimen"
 
 
 def _free_name(path: Path) -> Path:

@@ -58,7 +58,8 @@ def _css(colours: Colours) -> str:
         f".call {{ font-weight: bold; font-size: medium; margin: 2px 0 6px 0; }}"
         f".muted, th {{ color: {colours.muted}; font-weight: normal; }}"
         f".caution {{ color: {colours.caution}; }}"
-        f"td, th {{ padding: 2px 10px 2px 0; text-align: left; vertical-align: top; }}"
+        f"td, th {{ padding: 1px 8px 1px 0; text-align: left; vertical-align: top; }}"
+        f".whole {{ white-space: nowrap; }}"
         f"li {{ margin: 2px 0; color: {colours.text}; }}"
     )
 
@@ -72,30 +73,27 @@ def _terms(terms: Sequence[Term]) -> str:
     rows = "".join(_term(t) for t in terms if t.origin != "unit activity")
     if not rows:
         return ""
-    head = "<tr><th>Reactant</th><th>Used, as reported</th><th>Reference</th></tr>"
+    head = "<tr><th>Reactant</th><th>Used</th><th>Reference</th></tr>"
     return f"<h3>Reactants</h3><table cellspacing='0' width='100%'>{head}{rows}</table>"
 
 
 def _term(term: Term) -> str:
-    times = f"{signed(term.nu, 0)} " if term.nu else "through the pool: "
-    mark = _MARKS.get(term.origin, "")
+    """A line of what was used, and one of where it comes from."""
     used = concentration(term.concentration)
-    if used and math.isfinite(term.sd_ln):
-        used += f" ± {relative(term.sd_ln)}"
     used = {"below LOQ": "under ", "above range": "over "}.get(term.origin, "") + used if used else "no value"
-    reported = f'<br><span class="muted">{escape(term.reported)}</span>' if term.reported else ""
-    reference = concentration(term.reference) or "none"
-    turning = ""
+    sure = f" ± {relative(term.sd_ln)}" if used and math.isfinite(term.sd_ln) else ""
+    told = [f"{term.origin}{sure}", term.reported]
+    if not term.nu:
+        told.insert(0, "by way of the pool")
     if math.isfinite(term.turning_point):
         factor = term.turning_point / term.concentration
-        turning = (
-            f'<br><span class="muted">equilibrium at {escape(concentration(term.turning_point))}'
-            f" ({_factor(factor)})</span>"
-        )
+        told.append(f"at equilibrium with {concentration(term.turning_point)} ({_factor(factor)})")
+    times = f"{signed(term.nu, 0)} " if abs(term.nu) > 1 else ""
     return (
-        f"<tr><td><b>{escape(term.symbol)}</b><br>"
-        f'<span class="muted">{times}{mark} {escape(term.origin)}</span></td>'
-        f"<td>{escape(used)}{reported}</td><td>{escape(reference)}{turning}</td></tr>"
+        f"<tr><td class='whole'><b>{times}{escape(term.symbol)}</b> {_MARKS.get(term.origin, '')}</td>"
+        f"<td class='whole'>{escape(used)}</td>"
+        f"<td class='whole'>{escape(concentration(term.reference) or 'none')}</td></tr>"
+        f"<tr><td colspan='3' class='muted'>{escape('; '.join(t for t in told if t))}</td></tr>"
     )
 
 

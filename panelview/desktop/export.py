@@ -46,7 +46,7 @@ def write_folder(review: Review, folder: Path, when: datetime, token: Token) -> 
     """Write tables, pages and review.json of all specimens; a stopped run leaves nothing behind."""
     from panelview.output.batch import write_review
 
-    write_review(review, folder, pdf=True, when=when, progress=token.report, jobs=1)
+    write_review(review, folder, when=when, progress=token.report, cancelled=lambda: token.cancelled, jobs=1)
     return folder
 
 

@@ -63,7 +63,7 @@ LIGHT = Colours(
     mark=_BLACK,
     band="#D3DAD9",
     hairline="#8B9499",
-    compressed="#F1F2F0",
+    compressed="#0F1B2A33",
     caution="#8A4B00",
     caution_back="#FFF3DC",
 )
@@ -85,7 +85,7 @@ DARK = Colours(
     mark="#F2F4F4",
     band="#39434A",
     hairline="#727D84",
-    compressed="#202427",
+    compressed="#12FFFFFF",
     caution="#F0C36B",
     caution_back="#3A3120",
 )

@@ -47,9 +47,16 @@ def problem_rows(panel: Panel) -> list[tuple[str, ...]]:
     ]
 
 
-def left_out(panel: Panel) -> int:
-    """How many values and specimens were left out."""
-    return sum(p.severity in (Severity.VALUE, Severity.SPECIMEN) for p in panel.problems)
+def left_out(panel: Panel) -> str:
+    """How many values and specimens were left out, in words; "" where none was."""
+    values = sum(p.severity is Severity.VALUE for p in panel.problems)
+    specimens = sum(p.severity is Severity.SPECIMEN for p in panel.problems)
+    parts = [_counted(n, what) for n, what in ((values, "value"), (specimens, "specimen")) if n]
+    return " and ".join(parts)
+
+
+def _counted(count: int, what: str) -> str:
+    return f"1 {what}" if count == 1 else f"{count} {what}s"
 
 
 def value_rows(panel: Panel) -> list[tuple[str, ...]]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from PySide6.QtCore import (
@@ -70,13 +70,14 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     """
     controls = set(review.reference.specimens)
     wanted = text.casefold().strip()
+    has_several = len({s.matrix for s in review.specimens}) > 1
     of_participant: dict[str, list[Entry]] = {}
     of_controls: list[Entry] = []
     for i, facts in enumerate(review.specimens):
         searched = f"{facts.code} {facts.participant} {facts.group} {facts.matrix}".casefold()
         if wanted and wanted not in searched:
             continue
-        entry = _entry(review, i, i in controls)
+        entry = _entry(review, i, i in controls, has_several)
         if entry.is_control:
             of_controls.append(entry)
         else:
@@ -85,24 +86,22 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     for participant, own in of_participant.items():
         if len(own) > 1:
             made.append(Entry(f"{participant} · {len(own)} specimens"))
-            own = [_indented(e) for e in own]
-        made += own
+            made += [_indented(e) for e in own]
+        else:
+            made.append(_named(own[0], participant))
     if of_controls:
-        made.append(Entry(f"Controls · {len(of_controls)} specimens"))
+        made.append(Entry(f"Controls · {len(of_controls)}"))
         made += [_indented(e) for e in of_controls]
     return made
 
 
-def _entry(review: Review, specimen: int, is_control: bool) -> Entry:
+def _entry(review: Review, specimen: int, is_control: bool, has_matrices: bool) -> Entry:
+    """One specimen; its matrix is told where the panel holds several."""
     facts = review.specimens[specimen]
-    matrix = review.catalogue.matrices.get(facts.matrix)
-    words = [
-        facts.collected,
-        facts.group if not is_control else "",
-        matrix.name if matrix else "matrix not stated",
-    ]
-    if facts.participant and facts.participant != facts.code:
-        words.insert(0, facts.participant)
+    words = [facts.collected, facts.group if not is_control else ""]
+    if has_matrices:
+        matrix = review.catalogue.matrices.get(facts.matrix)
+        words.append(matrix.name if matrix else "matrix not stated")
     return Entry(
         text=facts.code,
         specimen=specimen,
@@ -113,10 +112,13 @@ def _entry(review: Review, specimen: int, is_control: bool) -> Entry:
     )
 
 
+def _named(entry: Entry, participant: str) -> Entry:
+    """With the participant told, where it is not the specimen's own code."""
+    return entry if participant == entry.text else replace(entry, detail=f"{participant} · {entry.detail}")
+
+
 def _indented(entry: Entry) -> Entry:
-    return Entry(
-        entry.text, entry.specimen, entry.detail, entry.off, entry.read, entry.is_control, indented=True
-    )
+    return replace(entry, indented=True)
 
 
 class SpecimenModel(QAbstractListModel):

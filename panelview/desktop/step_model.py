@@ -9,19 +9,19 @@ from PySide6.QtGui import QFont
 
 from panelview.assess.review import Review
 from panelview.desktop.arrangement import Heading, Row, is_unread
-from panelview.desktop.cells import HEADINGS, TOOLTIPS, Cell, cell_text, spoken
+from panelview.desktop.cells import HEADINGS, NUMBERS, TOOLTIPS, Cell, cell_text, spoken
 from panelview.output.scale import Axis
 from panelview.output.strip import Strip, strip_of
 
-#: Data roles of our own: the `Strip` to paint, the row (a `Heading` or a column of the review), and how the
-#: row is to look ("", "back", "forward" or "unread").
+#: Data roles of our own: the `Strip` to paint, the row (a `Heading` or a column of the review), how the row is
+#: to look ("", "back", "forward" or "unread"), and the enzyme's name.
 STRIP_ROLE = Qt.ItemDataRole.UserRole + 1
 ROW_ROLE = Qt.ItemDataRole.UserRole + 2
 LOOK_ROLE = Qt.ItemDataRole.UserRole + 3
+ENZYME_ROLE = Qt.ItemDataRole.UserRole + 4
 
 Index = QModelIndex | QPersistentModelIndex
 
-_NUMBERS = (Cell.GAMMA, Cell.K_PRIME, Cell.DELTA_G, Cell.SHIFT)
 _RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
 _LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
 
@@ -96,7 +96,7 @@ class StepModel(QAbstractTableModel):
         if role in (Qt.ItemDataRole.ToolTipRole, Qt.ItemDataRole.AccessibleDescriptionRole):
             return TOOLTIPS[cell]
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return _RIGHT if cell in _NUMBERS else _LEFT
+            return _RIGHT if cell in NUMBERS else _LEFT
         return None
 
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
@@ -117,12 +117,14 @@ class StepModel(QAbstractTableModel):
             return self.strip(column)
         if role == LOOK_ROLE:
             return self.look(column)
+        if role == ENZYME_ROLE:
+            return self._shown.columns[column].step.enzyme
         if role == Qt.ItemDataRole.AccessibleTextRole:
             return spoken(self._shown, self._specimen, column, cell, self._axis)
         if role == Qt.ItemDataRole.ToolTipRole:
             return self._tooltip(column, cell)
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return _RIGHT if cell in _NUMBERS else _LEFT
+            return _RIGHT if cell in NUMBERS else _LEFT
         if role == Qt.ItemDataRole.FontRole and self.strip(column).side:
             font = QFont()
             font.setBold(True)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import Qt, Signal
+from PySide6.QtGui import QFontMetrics
 from PySide6.QtWidgets import (
     QButtonGroup,
     QCheckBox,
@@ -206,4 +207,7 @@ def _segment(text: str, side: str, tip: str) -> QPushButton:
     button.setCheckable(True)
     button.setToolTip(tip)
     button.setProperty("segment", side)
+    bold = button.font()
+    bold.setBold(True)  # as the style sheet shows it when it is on
+    button.setMinimumWidth(QFontMetrics(bold).horizontalAdvance(text.replace("&", "")) + 22)
     return button

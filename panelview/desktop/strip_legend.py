@@ -14,24 +14,21 @@ from panelview.output.scale import LINEAR, Axis, Scale
 from panelview.output.strip import Strip
 
 _SCALE = Scale(-LINEAR, LINEAR)
-_CELL = 40
+_CELL = 34
 
 
 def legend(axis: Axis) -> list[tuple[Strip, str]]:
     """Each mark as a strip of its own, and what it means."""
     limits = "highlighted from" if axis is Axis.SHIFT else "near equilibrium"
-    interval = (
-        "measured; bar: ± 1.96 SD among healthy" if axis is Axis.SHIFT else "measured; bar: 95 % interval"
-    )
     return [
-        (Strip("", 0.0, -7.0, 7.0), interval),
-        (Strip("", 0.0, -7.0, 7.0, proxy=True), "proxy"),
+        (Strip("", 0.0, -7.0, 7.0), "measured"),
         (Strip("", 0.0, -7.0, 7.0, inferred=True), "inferred pool"),
+        (Strip("", 0.0, -7.0, 7.0, proxy=True), "proxy"),
         (Strip("", math.nan, -math.inf, 4.0), "bound"),
         (Strip("", 0.0, -7.0, 7.0, side="back"), "off"),
         (Strip("", band=(-7.0, 7.0)), "controls, 95 %"),
-        (Strip("", spread=(0.0, 7.0), controls=(-6.0, -2.0, 3.0, 7.0)), "controls, mean ± SD"),
         (Strip("", limits=(-5.0, 5.0)), limits),
+        (Strip("", spread=(0.0, 7.0), controls=(-6.0, -2.0, 3.0, 7.0)), "controls, mean ± SD"),
     ]
 
 
@@ -54,17 +51,18 @@ class StripLegend(QWidget):
         return QSize(300, self.fontMetrics().height() + 6)
 
     def _name(self) -> None:
+        is_shift = self._axis is Axis.SHIFT
         words = "; ".join(
             (
-                "filled point: measured",
+                "filled point: measured; bar: "
+                + ("± 1.96 SD of such a difference among healthy specimens" if is_shift else "95 % interval"),
                 "open point: proxy",
                 "dashed diamond: rests on an inferred free pool",
                 "bracket and arrow: a bound from a value beyond a limit of quantification",
                 "large and coloured: off, beyond the highlight floor",
                 "band: 95 % reference interval of the controls",
                 "thin cross: mean ± standard deviation of the controls where they are too few for an interval",
-                "dotted lines: "
-                + ("highlight floor" if self._axis is Axis.SHIFT else "limits of near equilibrium"),
+                "dotted lines: " + ("highlight floor" if is_shift else "limits of near equilibrium"),
                 "shaded ends behind the double stroke: compressed scale",
             )
         )
@@ -85,5 +83,5 @@ class StripLegend(QWidget):
             painter.setPen(self._colours.colour("muted"))
             area = QRectF(x + _CELL + 2, 0, width + 4, self.height())
             painter.drawText(area, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter, text)
-            x += _CELL + width + 14
+            x += _CELL + width + 10
         painter.end()

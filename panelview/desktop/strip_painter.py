@@ -180,14 +180,19 @@ class StripPainter:
         painter.restore()
 
     def _axis_words(self, painter: QPainter, area: QRectF, axis: Axis, metrics: QFontMetricsF) -> None:
-        """Title in the middle, what the sides mean at the ends; the sides go first where room is short."""
+        """Title in the middle, what the sides mean at the ends; shortened step by step where room is short."""
         top = QRectF(area.left() + 4, area.top() + 2, area.width() - 8, metrics.height())
         left, right = f"← {axis.left}", f"{axis.right} →"
-        title = axis.title
-        needed = metrics.horizontalAdvance(left + right + title) + 30
+        short = f"← {axis.left.split()[-1]}", f"{axis.right.split()[-1]} →"
+        choices = (
+            (left, axis.title, right),
+            (left, "kJ/mol", right),
+            (short[0], "kJ/mol", short[1]),
+            ("←", "kJ/mol", "→"),
+        )
+        fitting = (c for c in choices if sum(metrics.horizontalAdvance(t) for t in c) + 16 <= top.width())
+        left, title, right = next(fitting, choices[-1])
         painter.setPen(self._colours.colour("text"))
-        if needed > top.width():
-            title = ""
         painter.drawText(top, Qt.AlignmentFlag.AlignHCenter, title)
         painter.setPen(self._colours.colour("muted"))
         painter.drawText(top, Qt.AlignmentFlag.AlignLeft, left)
