@@ -46,6 +46,10 @@ class Row:
         """The cell as it is; may be empty."""
         return self._values[self._index[column]]
 
+    def texts(self, columns: Sequence[str]) -> tuple[str, ...]:
+        """Several cells as they are."""
+        return tuple([self._values[self._index[column]] for column in columns])
+
     def required(self, column: str) -> str:
         """The cell, which must not be empty."""
         value = self._values[self._index[column]]
@@ -100,9 +104,11 @@ class Row:
 
     def many(self, column: str) -> tuple[str, ...]:
         """Words separated by semicolons, none of them twice; may be empty."""
-        value = self.text(column)
+        value = self._values[self._index[column]]
         if not value:
             return ()
+        if ";" not in value:
+            return (value,)
         words = tuple(word.strip() for word in value.split(";"))
         if "" in words:
             raise self.error(column, "there is nothing between two semicolons", "remove one of them")
@@ -112,7 +118,7 @@ class Row:
 
     def many_known(self, column: str, ids: Collection[str], kind: str) -> tuple[str, ...]:
         """Ids separated by semicolons; may be empty."""
-        return tuple(self._check_known(column, word, ids, kind) for word in self.many(column))
+        return tuple([self._check_known(column, word, ids, kind) for word in self.many(column)])
 
     def _number(self, column: str, text: str) -> float:
         try:
@@ -166,14 +172,13 @@ def unique(rows: Iterable[Row], columns: Sequence[str]) -> None:
     """Raise CatalogueError where two rows agree in all of `columns`."""
     seen: dict[tuple[str, ...], int] = {}
     for row in rows:
-        key = tuple(row.text(column) for column in columns)
-        if key in seen:
+        key = row.texts(columns)
+        if seen.setdefault(key, row.number) != row.number:
             raise row.error(
                 columns[-1],
                 f"“{', '.join(key)}” already stands in row {seen[key]}",
                 "remove one of the two rows",
             )
-        seen[key] = row.number
 
 
 def _check_header(name: str, header: Sequence[str], columns: Sequence[str]) -> None:
