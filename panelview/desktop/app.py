@@ -1,4 +1,4 @@
-"""Starts the window: application, font, colours, what happens on faults, and the file given on the command line."""
+"""Starts the window: application, font, colours, faults, and the file of the command line."""
 
 from __future__ import annotations
 

@@ -75,10 +75,10 @@ class TextTable(QAbstractTableModel):
     def headings(self) -> tuple[str, ...]:
         return self._headings
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         return 0 if parent.isValid() else len(self._rows)
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+    def columnCount(self, parent: Index = QModelIndex()) -> int:
         return 0 if parent.isValid() else len(self._headings)
 
     def headerData(

@@ -43,8 +43,8 @@ TOOLTIPS = {
     Cell.GAMMA: "Mass-action ratio Γ of the specimen, concentrations in mol/L",
     Cell.K_PRIME: "Apparent equilibrium constant K′eq at the specimen's conditions, mol/L",
     Cell.DELTA_G: "ΔG′ = RT ln(Γ/K′eq) ± standard uncertainty, kJ/mol",
-    Cell.SHIFT: "ΔG′ less the mean of the controls, ± the standard deviation of that difference among healthy "
-    "specimens, kJ/mol",
+    Cell.SHIFT: "ΔG′ less the mean of the controls, ± the standard deviation of that difference "
+    "among healthy specimens, kJ/mol",
     Cell.CALL: "What may be said of the step",
 }
 

@@ -47,7 +47,7 @@ _KINDS = (
 
 
 class NumberField(QDoubleSpinBox):
-    """A number with a point or a comma; takes any finite number, so that the model can say what it refuses."""
+    """A number with a point or a comma; takes any number, so that the model can say what it refuses."""
 
     def __init__(self, decimals: int, step: float, suffix: str, lowest: float = -1000.0) -> None:
         super().__init__()

@@ -1,4 +1,4 @@
-"""The evidence for a step laid out as rich text: the texts are the evidence's own, this only arranges them."""
+"""The evidence for a step laid out as rich text; the texts are the evidence's own."""
 
 from __future__ import annotations
 
@@ -11,7 +11,7 @@ from panelview.assess.effectors import EffectorFinding
 from panelview.assess.evidence import Evidence, Term
 from panelview.catalogue.measurements import MeasuredConstant
 from panelview.desktop.palette import Colours
-from panelview.output.text import concentration, fixed, relative, signed, significant
+from panelview.output.text import concentration, fixed, power_of_ten, relative, signed, significant
 from panelview.thermo.physical import ZERO_CELSIUS
 
 #: Where each kind of value comes from, as a mark beside its words: solid for measured, hollow for inferred.
@@ -143,7 +143,7 @@ def _constant(evidence: Evidence) -> str:
         f"{count} measurement{'' if count == 1 else 's'} on record" if count else "no measurement on record"
     )
     rows = "".join(_measurement(m) for m in evidence.measurements[:MOST_MEASUREMENTS])
-    head = "<tr><th>K′</th><th>pH</th><th>°C</th><th>I</th><th>pMg</th><th>source</th></tr>"
+    head = "<tr><th>K′</th><th>at</th><th>Source, grade</th></tr>"
     table = f"<table cellspacing='0' width='100%'>{head}{rows}</table>" if rows else ""
     rest = count - MOST_MEASUREMENTS
     more = f"<p class='muted'>and {rest} more</p>" if rest > 0 else ""
@@ -155,15 +155,12 @@ def _constant(evidence: Evidence) -> str:
 
 
 def _measurement(m: MeasuredConstant) -> str:
-    out = " (set aside)" if m.set_aside else ""
-    cells = (
-        significant(m.k_prime, 3) if 1e-3 <= m.k_prime < 1e5 else f"{m.k_prime:.2e}".replace("e-", "e−"),
-        fixed(m.ph, 2),
-        fixed(m.temperature - ZERO_CELSIUS, 0),
-        fixed(m.ionic_strength, 2),
-        fixed(m.pmg, 1),
-        f"{m.reference_id} {m.evaluation}{out}".strip(),
+    conditions = (
+        f"pH {fixed(m.ph, 2)}, {fixed(m.temperature - ZERO_CELSIUS, 0)} °C, "
+        f"I {fixed(m.ionic_strength, 2)}, pMg {fixed(m.pmg, 1)}"
     )
+    out = ", set aside" if m.set_aside else ""
+    cells = (power_of_ten(math.log10(m.k_prime)), conditions, f"{m.reference_id}, {m.evaluation}{out}")
     return "<tr>" + "".join(f"<td>{escape(c)}</td>" for c in cells) + "</tr>"
 
 

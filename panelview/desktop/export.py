@@ -1,4 +1,4 @@
-"""What leaves the window: a page, tables and pages of all specimens, a figure of the strips, text for the clipboard."""
+"""What leaves the window: pages, tables, a figure of the strips, text for the clipboard."""
 
 from __future__ import annotations
 

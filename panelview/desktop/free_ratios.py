@@ -1,4 +1,4 @@
-"""The free cofactor ratios of a specimen: what they are, where they come from, and values of the reviewer's own."""
+"""The free cofactor ratios of a specimen, where they come from, and values of the reviewer's own."""
 
 from __future__ import annotations
 
@@ -81,8 +81,8 @@ class FreeRatiosDialog(QDialog):
         self.problem.setProperty("role", "problem")
         self.problem.setWordWrap(True)
         note = QLabel(
-            "Total NAD(P)(H) of an extract is never read as free. A ratio of your own, oxidised over reduced, "
-            "goes in place of the couple's for all specimens and is marked wherever it is used."
+            "Total NAD(P)(H) of an extract is never read as free. A ratio of your own, oxidised over "
+            "reduced, goes in place of the couple's for all specimens and is marked wherever it is used."
         )
         note.setWordWrap(True)
         grid = QGridLayout()

@@ -71,7 +71,8 @@ def about_html(catalogue: Catalogue | None) -> str:
     text = (resources() / "help" / "about.html").read_text(encoding="utf-8")
     data = "loaded with the first panel"
     if catalogue is not None:
-        data = f"{catalogue.version} (SHA-256 {catalogue.sha256[:16]} …), constants {catalogue.constants.version}"
+        constants = catalogue.constants.version
+        data = f"{catalogue.version} (SHA-256 {catalogue.sha256[:16]} …), constants {constants}"
     return Template(text).substitute(
         caution=escape(CAUTION),
         version=panelview.__version__,

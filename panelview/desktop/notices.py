@@ -1,4 +1,4 @@
-"""What the window tells its reader: a bar for what must be seen, a line for what passes, progress with a way out."""
+"""What the window tells its reader: what must be seen, what passes, and progress with a way out."""
 
 from __future__ import annotations
 
@@ -65,7 +65,7 @@ class NoticeBar(QFrame):
 
 
 class _Elided(QLabel):
-    """One line that is cut with an ellipsis rather than pushing its neighbours away; the tooltip has it whole."""
+    """One line, cut with an ellipsis rather than pushing its neighbours away; the tooltip has it whole."""
 
     def __init__(self) -> None:
         super().__init__()

@@ -96,7 +96,7 @@ class Reviewing(QObject):
             self._assess_new(files, panel, frozenset())
             return
 
-        def read(token: work.Token) -> Panel:
+        def read(_token: work.Token) -> Panel:
             from panelview.catalogue.load import load_catalogue
             from panelview.intake.read import read_panels
 
@@ -105,7 +105,7 @@ class Reviewing(QObject):
         self._begin("Reading …", read, lambda again: self._assess_new(files, again, unstated))
 
     def _assess_new(self, files: tuple[Path, ...], panel: Panel, said: frozenset[str]) -> None:
-        def judge(token: work.Token) -> Review:
+        def judge(_token: work.Token) -> Review:
             from panelview.assess.assess import assess
             from panelview.catalogue.load import load_catalogue
 
@@ -195,7 +195,7 @@ class Reviewing(QObject):
         assert review is not None
         self._assessing = True
 
-        def judge(token: work.Token) -> Review:
+        def judge(_token: work.Token) -> Review:
             from panelview.assess.assess import assess
             from panelview.catalogue.load import load_catalogue
 

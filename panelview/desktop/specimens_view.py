@@ -136,7 +136,7 @@ class SpecimenModel(QAbstractListModel):
     def row_of(self, specimen: int) -> int:
         return next((k for k, e in enumerate(self._entries) if e.specimen == specimen), -1)
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         return 0 if parent.isValid() else len(self._entries)
 
     def flags(self, index: Index) -> Qt.ItemFlag:

@@ -1,4 +1,4 @@
-"""The step table as a Qt model: wraps a review and an arrangement, returns texts and strips, computes nothing."""
+"""The step table as a Qt model: wraps a review and an arrangement, computes nothing."""
 
 from __future__ import annotations
 
@@ -13,8 +13,8 @@ from panelview.desktop.cells import HEADINGS, NUMBERS, TOOLTIPS, Cell, cell_text
 from panelview.output.scale import Axis
 from panelview.output.strip import Strip, strip_of
 
-#: Data roles of our own: the `Strip` to paint, the row (a `Heading` or a column of the review), how the row is
-#: to look ("", "back", "forward" or "unread"), and the enzyme's name.
+#: Data roles of our own: the `Strip` to paint, the row (a `Heading` or a column of the review), how the
+#: row is to look ("", "back", "forward" or "unread"), and the enzyme's name.
 STRIP_ROLE = Qt.ItemDataRole.UserRole + 1
 ROW_ROLE = Qt.ItemDataRole.UserRole + 2
 LOOK_ROLE = Qt.ItemDataRole.UserRole + 3
@@ -74,10 +74,10 @@ class StepModel(QAbstractTableModel):
 
     # -- Qt's questions --------------------------------------------------------------------------
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         return 0 if parent.isValid() else len(self._rows)
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008
+    def columnCount(self, parent: Index = QModelIndex()) -> int:
         return 0 if parent.isValid() else len(Cell)
 
     def flags(self, index: Index) -> Qt.ItemFlag:

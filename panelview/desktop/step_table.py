@@ -15,7 +15,7 @@ from panelview.desktop.strip_header import StripHeader
 from panelview.desktop.strip_painter import StripPainter
 from panelview.output.scale import Axis, Scale
 
-#: The widest usual text of each column of fixed width; longer ones are elided and told in full by the tooltip.
+#: The widest usual text of each column of fixed width; longer ones are elided, the tooltip has them whole.
 _USUAL = {
     Cell.GAMMA: "0.0·10⁻¹⁰",
     Cell.K_PRIME: "0.0·10⁻¹⁰",
@@ -24,7 +24,7 @@ _USUAL = {
     Cell.CALL: "pushed forward −00.0",
 }
 
-#: The step's name takes this share of the table, within these limits, px; the strip takes the rest, at least this.
+#: Share of the table's width that the step's name takes, within limits, px; the strip takes the rest.
 _NAME_SHARE = 0.16
 _NAME_LEAST, _NAME_MOST = 104, 250
 _LEAST_STRIP = 156

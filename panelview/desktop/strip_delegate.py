@@ -1,4 +1,4 @@
-"""Paints the rows of the step table: strips, names, numbers and headings, in the colours of the row's look."""
+"""Paints the rows of the step table: strips, names, numbers and headings."""
 
 from __future__ import annotations
 
@@ -83,7 +83,7 @@ class StripDelegate(QStyledItemDelegate):
     def _paint_strip(
         self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex
     ) -> None:
-        assert self.colours is not None and self.painter is not None
+        assert self.painter is not None
         strip = index.data(STRIP_ROLE)
         if strip.reason:
             self._text(painter, option, strip.reason, "muted", False, Qt.AlignmentFlag.AlignLeft)

@@ -61,7 +61,7 @@ class StripLegend(QWidget):
                 "bracket and arrow: a bound from a value beyond a limit of quantification",
                 "large and coloured: off, beyond the highlight floor",
                 "band: 95 % reference interval of the controls",
-                "thin cross: mean ± standard deviation of the controls where they are too few for an interval",
+                "thin cross: mean ± standard deviation of controls that are too few for an interval",
                 "dotted lines: " + ("highlight floor" if is_shift else "limits of near equilibrium"),
                 "shaded ends behind the double stroke: compressed scale",
             )

@@ -180,7 +180,7 @@ class StripPainter:
         painter.restore()
 
     def _axis_words(self, painter: QPainter, area: QRectF, axis: Axis, metrics: QFontMetricsF) -> None:
-        """Title in the middle, what the sides mean at the ends; shortened step by step where room is short."""
+        """Title in the middle, what the sides mean at the ends; shortened where room is short."""
         top = QRectF(area.left() + 4, area.top() + 2, area.width() - 8, metrics.height())
         left, right = f"← {axis.left}", f"{axis.right} →"
         short = f"← {axis.left.split()[-1]}", f"{axis.right.split()[-1]} →"

@@ -160,7 +160,7 @@ class MainWindow(QMainWindow):
             self.evidence.page,
             self.below.currentWidget(),
         ]
-        return [place for place in places if place is not None and place.isVisible()]
+        return [place for place in places if place.isVisible()]
 
     def panels(self) -> dict[str, QWidget]:
         """Views that can be put away, by their action."""

@@ -93,7 +93,7 @@ class _Work(QRunnable, Generic[T]):
         try:
             self._relay.token.check()
             result = self._task(self._relay.token)
-        except Exception as caught:  # noqa: BLE001 - handed to the starter, which tells it from a bug
+        except Exception as caught:
             error = caught
         self._relay.ended.emit(result, error)
 

@@ -5,10 +5,10 @@ from __future__ import annotations
 from collections import Counter
 
 from PySide6.QtGui import QKeySequence
+from PySide6.QtWidgets import QMainWindow
 
 from panelview.desktop.actions import SPECS, Actions, keyboard_rows
 from panelview.desktop.help_dialogs import keyboard_html
-from PySide6.QtWidgets import QMainWindow
 
 
 def test_no_key_is_given_twice():

@@ -24,14 +24,14 @@ def run_and_wait(qtbot, task):
 
 
 def test_a_task_runs_off_the_main_thread_and_its_result_arrives_on_it(qtbot):
-    _, calls = run_and_wait(qtbot, lambda token: threading.current_thread() is threading.main_thread())
+    _, calls = run_and_wait(qtbot, lambda _: threading.current_thread() is threading.main_thread())
     assert calls == [("done", (False,), True)]
 
 
 def test_an_error_of_the_task_arrives_as_itself(qtbot):
     error = ValueError("two decimal marks")
 
-    def fail(token):
+    def fail(_):
         raise error
 
     _, calls = run_and_wait(qtbot, fail)
@@ -78,7 +78,7 @@ def test_a_result_that_comes_after_cancelling_is_not_delivered(qtbot):
     """A task that never asks whether it is cancelled still cannot change the window."""
     started, go_on = threading.Event(), threading.Event()
 
-    def task(token):
+    def task(_):
         started.set()
         go_on.wait(5)
         return "all"
@@ -100,7 +100,8 @@ def test_check_raises_only_after_cancelling():
         token.check()
 
 
-def test_shutting_down_waits_for_what_runs(qtbot):
+@pytest.mark.usefixtures("qapp")
+def test_shutting_down_waits_for_what_runs():
     started, ended = threading.Event(), threading.Event()
 
     def task(token):

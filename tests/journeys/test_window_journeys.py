@@ -6,6 +6,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from panelview.intake.read import read_panels
 from pypdf import PdfReader
 from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
 from PySide6.QtGui import QDropEvent
@@ -16,7 +17,6 @@ from panelview.assess.review import ORIGIN_DEFAULT, ORIGIN_FILE, ORIGIN_REVIEWER
 from panelview.assess.settings import ConditionChoice, Settings
 from panelview.catalogue.load import load_catalogue
 from panelview.desktop.cells import Cell
-from panelview.intake.read import read_panels
 from panelview.output.text import CAUTION
 
 
@@ -51,7 +51,7 @@ def type_number(qtbot, field, text: str) -> None:
 
 
 def test_from_a_sample_to_a_page(qtbot, window, tmp_path, monkeypatch):
-    """Open a sample, choose a specimen, sort by how far off, read the evidence, try another pH, reset, export."""
+    """Sample, specimen, furthest off first, evidence, another pH, reset, page."""
     with qtbot.waitSignal(window.reviewing.opened):
         qtbot.mouseClick(window.start.samples[0], Qt.MouseButton.LeftButton)
     review = window.reviewing.review
@@ -161,10 +161,12 @@ def test_the_whole_review_by_keyboard_alone(qtbot, window, red_cells, monkeypatc
 
     qtbot.keyClick(table, Qt.Key.Key_F, Qt.KeyboardModifier.ControlModifier)
     qtbot.keyClicks(QApplication.focusWidget(), "pyruvate kinase")
-    assert [window.reviewing.review.columns[c].step.id for c in window.steps.model.rows if isinstance(c, int)] == [
-        "pyruvate_kinase"
-    ]
-    qtbot.keyClick(window, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier)
+    assert [
+        window.reviewing.review.columns[c].step.id for c in window.steps.model.rows if isinstance(c, int)
+    ] == ["pyruvate_kinase"]
+    qtbot.keyClick(
+        window, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier
+    )
     assert CAUTION in QApplication.clipboard().text()
 
     seen = set()
@@ -345,7 +347,9 @@ def test_several_files_open_as_one_panel(qtbot, window, tmp_path):
     paths = []
     for code in ("S1", "S2"):
         path = Path(tmp_path / f"{code}.csv")
-        path.write_text(f"{head}{code},plasma,lactate,2.1,mmol/L\n{code},plasma,pyruvate,0.06,mmol/L\n", encoding="utf-8")
+        path.write_text(
+            f"{head}{code},plasma,lactate,2.1,mmol/L\n{code},plasma,pyruvate,0.06,mmol/L\n", encoding="utf-8"
+        )
         paths.append(path)
     with qtbot.waitSignal(window.reviewing.opened):
         window.desk.open(paths)
