@@ -29,7 +29,7 @@ SAMPLES = (
         "Lactate, pyruvate and ketone bodies over days: how does redox move?",
     ),
     Sample(
-        "muscle_exercise.csv",
+        "muscle_biopsies.csv",
         "Muscle biopsies",
         "At rest and after exercise: which steps move, and does the energy state hold?",
     ),
