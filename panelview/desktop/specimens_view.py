@@ -140,7 +140,7 @@ class SpecimenModel(QAbstractListModel):
         return 0 if parent.isValid() else len(self._entries)
 
     def flags(self, index: Index) -> Qt.ItemFlag:
-        if index.isValid() and self._entries[index.row()].specimen < 0:
+        if not index.isValid() or self._entries[index.row()].specimen < 0:
             return Qt.ItemFlag.NoItemFlags
         return Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable
 

@@ -81,7 +81,7 @@ class StepModel(QAbstractTableModel):
         return 0 if parent.isValid() else len(Cell)
 
     def flags(self, index: Index) -> Qt.ItemFlag:
-        if index.isValid() and isinstance(self._rows[index.row()], Heading):
+        if not index.isValid() or isinstance(self._rows[index.row()], Heading):
             return Qt.ItemFlag.NoItemFlags
         return Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable | Qt.ItemFlag.ItemNeverHasChildren
 
