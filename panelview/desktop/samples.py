@@ -18,21 +18,9 @@ class Sample:
 
 
 SAMPLES = (
-    Sample(
-        "red_cells.csv",
-        "Red cells",
-        "Four participants against 24 controls: which step of glycolysis is held back?",
-    ),
-    Sample(
-        "plasma_series.csv",
-        "Plasma, a series of days",
-        "Lactate, pyruvate and ketone bodies over days: how does redox move?",
-    ),
-    Sample(
-        "muscle_biopsies.csv",
-        "Muscle biopsies",
-        "At rest and after exercise: which steps move, and does the energy state hold?",
-    ),
+    Sample("red_cells.csv", "Red cells", "Four participants and 24 controls: which step is held back?"),
+    Sample("plasma_series.csv", "Plasma over days", "Lactate, pyruvate and ketone bodies: how does redox move?"),
+    Sample("muscle_biopsies.csv", "Muscle biopsies", "At rest and after exercise: does the energy state hold?"),
 )
 
 

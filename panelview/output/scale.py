@@ -71,14 +71,26 @@ class Scale:
         return low + high
 
     def ticks(self, width: float, label_width: float) -> tuple[float, ...]:
-        """Values to label: the linear part in steps of 2 or 5 as room allows, each compressed part's end."""
+        """Values to label: the linear part in steps of 2 or 5, the compressed parts as room allows."""
         per_unit = width * (self.at(1.0) - self.at(0.0))
         step = next((s for s in (2.0, 5.0) if per_unit * s >= label_width * 1.25), LINEAR)
-        inner = [step * k for k in range(int(-LINEAR // step), int(LINEAR // step) + 1) if abs(step * k) <= LINEAR]
-        ends = [end for end in (self.lower, self.upper) if abs(end) > LINEAR]
-        least = label_width * 1.1
-        ends = [e for e in ends if width * abs(self.at(e) - self.at(math.copysign(LINEAR, e))) >= least]
-        return tuple(sorted(inner + ends))
+        count = int(LINEAR // step)
+        inner = [step * k for k in range(-count, count + 1)]
+        outer = [*self._outer_ticks(self.lower, width, label_width)]
+        outer += self._outer_ticks(self.upper, width, label_width)
+        return tuple(sorted(inner + outer))
+
+    def _outer_ticks(self, end: float, width: float, label_width: float) -> list[float]:
+        """Labels of the compressed part up to `end`: its end, then every 20 kJ/mol with room between."""
+        side = math.copysign(1.0, end)
+        kept = [side * LINEAR]
+        between = [side * size for size in range(20, int(abs(end)), 20)]
+        for value in (end, *between):
+            if abs(value) > LINEAR and all(
+                width * abs(self.at(value) - self.at(k)) >= label_width * 1.3 for k in kept
+            ):
+                kept.append(value)
+        return kept[1:]
 
 
 def scale_of(review: Review, axis: Axis) -> Scale:
