@@ -16,7 +16,6 @@ from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QLabel,
-    QSplitter,
     QTableView,
     QTabWidget,
     QVBoxLayout,
@@ -140,7 +139,7 @@ class TextTableView(QTableView):
 
 
 class BelowView(QTabWidget):
-    """Tabs: state of the chosen specimen; what was read."""
+    """Tabs: state of the chosen specimen; remarks on what was read; every value."""
 
     def __init__(self, reviewing: Reviewing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -156,6 +155,7 @@ class BelowView(QTabWidget):
         self._values_for: object = None
         self.addTab(self.state, "Redox and energy state")
         self.addTab(self._reading_page(), "What was read")
+        self.addTab(self.values, "Values as used")
         reviewing.opened.connect(self._show_new)
         reviewing.reviewed.connect(self._show_state)
         reviewing.specimen_changed.connect(self._show_state)
@@ -163,15 +163,11 @@ class BelowView(QTabWidget):
 
     def _reading_page(self) -> QWidget:
         page = QWidget()
-        split = QSplitter(Qt.Orientation.Horizontal)
-        split.addWidget(self.problems)
-        split.addWidget(self.values)
-        split.setSizes([500, 500])
         layout = QVBoxLayout(page)
         layout.setContentsMargins(6, 4, 6, 0)
         layout.setSpacing(4)
         layout.addWidget(self.summary)
-        layout.addWidget(split, 1)
+        layout.addWidget(self.problems, 1)
         return page
 
     def show_reading(self) -> None:
@@ -192,7 +188,7 @@ class BelowView(QTabWidget):
     def _fill_values(self) -> None:
         """The values are listed when they are first looked at: a cohort has very many."""
         review = self._reviewing.review
-        if self.currentIndex() == 1 and review is not None and self._values_for is not review.panel:
+        if self.currentWidget() is self.values and review is not None and self._values_for is not review.panel:
             self._values_for = review.panel
             self.values.texts.show(value_rows(review.panel))
 

@@ -224,6 +224,12 @@ class ConditionsBar(QWidget):
     def _set_floor(self, floor: float) -> None:
         self._reviewing.apply(choices.with_shift_floor(self._reviewing.wanted, floor))
 
+    def start_editing(self) -> None:
+        """Put the cursor on the first condition, ready to be typed over."""
+        first = self.fields["ph"].value
+        first.setFocus()
+        first.selectAll()
+
     def reset_all(self) -> None:
         """Everything as it was when the panel was opened."""
         self._reviewing.apply(self._reviewing.start)

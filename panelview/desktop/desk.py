@@ -61,7 +61,7 @@ class Desk:
             next_specimen=lambda: w.specimens.step_by(1),
             previous_specimen=lambda: w.specimens.step_by(-1),
             next_area=self.next_area,
-            edit_conditions=lambda: w.conditions.fields["ph"].value.setFocus(),
+            edit_conditions=w.conditions.start_editing,
             free_ratios=self.show_ratios,
             reset=w.conditions.reset_all,
             what_was_read=self.show_reading,
@@ -163,7 +163,8 @@ class Desk:
     @staticmethod
     def choice_text(text: str) -> str:
         """A refused choice as a sentence."""
-        return f"{text[:1].upper()}{text[1:]}. The last valid value stays."
+        is_symbol = text.startswith(("pH", "pMg"))
+        return f"{text if is_symbol else text[:1].upper() + text[1:]}. The last valid value stays."
 
     def note_followed(self) -> None:
         """The review has followed a change: an earlier refusal no longer holds."""

@@ -24,7 +24,7 @@ from panelview.output.text import CAUTION
 
 #: Sizes of an exported figure, px at scale 1.
 _ROW = 24
-_NAME_WIDTH = 210
+_NAME_WIDTH = 240
 _STRIP_WIDTH = 520
 _CALL_WIDTH = 250
 _PICTURE_SCALE = 2
@@ -120,7 +120,8 @@ class StripFigure:
     def _paint_row(self, painter: QPainter, top: float, column: int) -> None:
         strip = strip_of(self._review, self._specimen, column, self._axis)
         bold = bool(strip.side)
-        self._text(painter, QRectF(8, top, _NAME_WIDTH - 12, _ROW), step_name(self._review, column), bold)
+        name = f"{step_name(self._review, column)}  {self._review.columns[column].step.enzyme}"
+        self._text(painter, QRectF(8, top, _NAME_WIDTH - 12, _ROW), name, bold)
         area = QRectF(_NAME_WIDTH, top, _STRIP_WIDTH, _ROW)
         if strip.reason:
             self._text(painter, area.adjusted(8, 0, -8, 0), strip.reason)

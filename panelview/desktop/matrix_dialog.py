@@ -39,7 +39,7 @@ class MatrixDialog(QDialog):
             item.setToolTip(matrix.note)
             self.list.addItem(item)
         self.list.itemActivated.connect(lambda _: self.accept())
-        self.list.currentItemChanged.connect(lambda *_: self._allow())
+        self.list.itemSelectionChanged.connect(self._allow)
         self.buttons = QDialogButtonBox()
         self._take = self.buttons.addButton("Use this", QDialogButtonBox.ButtonRole.AcceptRole)
         self.leave = self.buttons.addButton("Leave it open", QDialogButtonBox.ButtonRole.RejectRole)
@@ -54,10 +54,9 @@ class MatrixDialog(QDialog):
         self.resize(440, 380)
 
     def _allow(self) -> None:
-        self._take.setEnabled(self.list.currentItem() is not None)
+        self._take.setEnabled(bool(self.list.selectedItems()))
 
     def accept(self) -> None:
-        item = self.list.currentItem()
-        if item is not None:
+        for item in self.list.selectedItems():
             self.chosen = item.data(Qt.ItemDataRole.UserRole)
             super().accept()

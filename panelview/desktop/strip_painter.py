@@ -15,6 +15,9 @@ from panelview.output.strip import Strip
 #: Room at both ends of a strip, px, so that a mark at the end is whole.
 MARGIN = 9.0
 
+#: What the sides mean, where there is no room for the axis's own words.
+_SHORT_SIDES = {Axis.SHIFT: ("← forward", "back →"), Axis.DISTANCE: ("← usual", "turned →")}
+
 _RADIUS = 4.2
 _RADIUS_STRONG = 5.4
 
@@ -183,7 +186,7 @@ class StripPainter:
         """Title in the middle, what the sides mean at the ends; shortened where room is short."""
         top = QRectF(area.left() + 4, area.top() + 2, area.width() - 8, metrics.height())
         left, right = f"← {axis.left}", f"{axis.right} →"
-        short = f"← {axis.left.split()[-1]}", f"{axis.right.split()[-1]} →"
+        short = _SHORT_SIDES[axis]
         choices = (
             (left, axis.title, right),
             (left, "kJ/mol", right),

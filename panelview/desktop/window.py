@@ -200,6 +200,7 @@ class MainWindow(QMainWindow):
             self._middle.setSizes([height * 60 // 100, height * 22 // 100])
         if self.store.value("window/axis") == Axis.DISTANCE.value:
             self.steps.set_axis(Axis.DISTANCE)
+        self.steps.hide_box.setChecked(self.store.value("window/hide_unread") == "true")
         for name, view in self.panels().items():
             shown = self.store.value(f"window/{name}", "true") == "true"
             self.actions_[name].setChecked(shown)
@@ -211,6 +212,8 @@ class MainWindow(QMainWindow):
         self.store.setValue("window/middle", self._middle.saveState())
         self.store.setValue("window/axis", self.steps.axis.value)
         self.store.setValue("window/colours", self.theme.choice.value)
+        hides = self.steps.hide_box.isChecked()
+        self.store.setValue("window/hide_unread", "true" if hides else "false")
         for name in self.panels():
             self.store.setValue(f"window/{name}", "true" if self.actions_[name].isChecked() else "false")
         self.reviewing.cancel()
