@@ -108,7 +108,7 @@ def shift_sd(reference: Reference, assay_sd: Array) -> Array:
     with np.errstate(divide="ignore", invalid="ignore"):
         spread = np.where(reference.sd > _NO_SPREAD, reference.sd, assay_sd)
         widened = np.where(np.isfinite(reference.df), np.sqrt(1 + 1 / reference.n), 1.0)
-    return np.where(np.isfinite(reference.sd), spread * widened, np.nan)
+        return np.where(np.isfinite(reference.sd), spread * widened, np.nan)
 
 
 def p_values(shift: Array, sd: Array, reference: Reference) -> Array:
