@@ -15,8 +15,8 @@ class FrozenDict(dict[K, V]):
         raise TypeError("the catalogue cannot be changed")
 
     __setitem__ = __delitem__ = _refuse
-    clear = pop = popitem = setdefault = update = _refuse  # type: ignore[assignment]
-    __ior__ = _refuse  # type: ignore[assignment]
+    clear = pop = popitem = setdefault = update = _refuse
+    __ior__ = _refuse
 
     def __reduce__(self) -> tuple[Any, ...]:
         return type(self), (dict(self),)
