@@ -56,7 +56,13 @@ def test_distance_limits_are_those_of_rolleston_and_newsholme():
     """Near within 1/5 and 5, far beyond 1/20 and 20 (Rolleston 1972; Newsholme and Start 1973)."""
     ln_ratio = np.log([1 / 21, 1 / 19, 1 / 5.01, 1 / 4.99, 1.0, 4.99, 5.01, 19, 21])
     no = np.zeros(9, dtype=bool)
-    expected = [Distance.FAR, *[Distance.BETWEEN] * 2, *[Distance.NEAR] * 3, *[Distance.BETWEEN] * 2, Distance.FAR]
+    expected = [
+        Distance.FAR,
+        *[Distance.BETWEEN] * 2,
+        *[Distance.NEAR] * 3,
+        *[Distance.BETWEEN] * 2,
+        Distance.FAR,
+    ]
     assert verdicts.distances(ln_ratio, no, no).tolist() == expected
 
 
@@ -75,7 +81,9 @@ def test_probability_of_being_near_is_the_normal_mass_between_the_limits():
 class TestStepsWithoutAUsualDirection:
     """Healthy isomerases lie above zero in published tables; the sign alone must not call them reversed."""
 
-    def call(self, ratio: float, shift: Shift, either: bool = True, direction: Direction = Direction.REVERSED):
+    def call(
+        self, ratio: float, shift: Shift, either: bool = True, direction: Direction = Direction.REVERSED
+    ):
         return verdicts.without_usual_direction(
             np.array([[direction]], dtype=np.int8),
             np.array([either]),

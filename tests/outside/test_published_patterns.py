@@ -1,8 +1,8 @@
 """Published patterns: the right step is called, in the right direction, and nothing else is accused.
 
-In a deficiency the substrates of the step rise and its products fall, so its ΔG′ becomes more negative; steps
-before it that lie far from equilibrium become less so. The red-cell panels are constructed on the textbook table
-(data/red_cell_cases.json says from what); they test the logic and are no patients.
+In a deficiency the substrates of the step rise and its products fall, so its ΔG′ becomes more negative;
+steps before it that lie far from equilibrium become less so. The red-cell panels are constructed on the
+textbook table (data/red_cell_cases.json says from what); they test the logic and are no patients.
 """
 
 from __future__ import annotations
@@ -26,7 +26,9 @@ CASES = {case["id"]: case for case in DATA["cases"]}
 STEADY = ("glucose_6_phosphate_isomerase", "triose_phosphate_isomerase", "phosphoglycerate_mutase", "enolase")
 
 
-def beside_controls(catalogue: Catalogue, values: dict[str, float | str], count: int = 12, start: int = 5) -> Review:
+def beside_controls(
+    catalogue: Catalogue, values: dict[str, float | str], count: int = 12, start: int = 5
+) -> Review:
     """The specimen X beside controls scattered by 8 % an analyte around the textbook table."""
     rng = np.random.default_rng(start)
     return assess(panel_of([*spread(DATA["control"], count, rng, sd=0.08), Specimen("X", values)]), catalogue)
@@ -57,8 +59,8 @@ def test_the_step_is_called_pushed_forward_and_highlighted(case, review):
 def test_every_shift_is_that_of_the_constructed_ratio(case, review):
     """Within the standard error that twelve scattered controls leave: they are not the table itself.
 
-    The pair GAPDH + PGK is left out: the constructed figure holds one fixed free NAD⁺/NADH, the review takes the
-    specimen's own from lactate and pyruvate.
+    The pair GAPDH + PGK is left out: the constructed figure holds one fixed free NAD⁺/NADH, the review
+    takes the specimen's own from lactate and pyruvate.
     """
     for step, expected in case["shift_kj_per_mol"].items():
         if step == "gapdh_pgk_combined":
@@ -146,7 +148,13 @@ def plasma(catalogue: Catalogue, values: dict[str, float]) -> Review:
 def test_pyruvate_oxidation_defect_leaves_lactate_over_pyruvate_alone(catalogue):
     """Lactate and pyruvate up together, L/P up to 20 in most of 371 published cases of pyruvate dehydrogenase
     deficiency (review, PMC4003492); the enzyme itself cannot be read in plasma."""
-    values = {"lactate": 5.0, "pyruvate": 0.33, "alanine": 0.70, "hydroxybutyrate_3": 0.05, "acetoacetate": 0.04}
+    values = {
+        "lactate": 5.0,
+        "pyruvate": 0.33,
+        "alanine": 0.70,
+        "hydroxybutyrate_3": 0.05,
+        "acetoacetate": 0.04,
+    }
     review = plasma(catalogue, values)
     assert value(review, "shift_call", "X", "lactate_dehydrogenase") == Shift.WITHIN
     assert value(review, "assessability", "X", "pyruvate_dehydrogenase") == Assessability.NOT_ASSESSABLE
@@ -154,12 +162,13 @@ def test_pyruvate_oxidation_defect_leaves_lactate_over_pyruvate_alone(catalogue)
 
 
 def test_respiratory_chain_pattern_reduces_both_compartments(catalogue):
-    """L/P 32 and 3-hydroxybutyrate/acetoacetate 6 (constructed; L/P above 20 often, published): both free ratios
-    fall, and the gradient between them stays within the 4.7 to 21 of intact liver (Krebs et al. 1968)."""
+    """L/P 32 and 3-hydroxybutyrate/acetoacetate 6 (constructed; L/P above 20 often, published): both free
+    ratios fall, and the gradient between them stays within the 4.7 to 21 of intact liver (Krebs et al.
+    1968)."""
     values = {"lactate": 5.5, "pyruvate": 0.17, "hydroxybutyrate_3": 0.60, "acetoacetate": 0.10}
     review = plasma(catalogue, values)
-    # Written pyruvate → lactate, so a reduced cytosol pushes it back; written 3-hydroxybutyrate → acetoacetate, so a
-    # reduced matrix pushes it forward.
+    # Written pyruvate → lactate, so a reduced cytosol pushes it back; written 3-hydroxybutyrate →
+    # acetoacetate, so a reduced matrix pushes it forward.
     assert value(review, "shift_call", "X", "lactate_dehydrogenase") == Shift.PUSHED_BACK
     assert value(review, "shift_call", "X", "hydroxybutyrate_dehydrogenase") == Shift.PUSHED_FORWARD
     ratio = {r.quantity: r.value for r in review.state_of(12)}

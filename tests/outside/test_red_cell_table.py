@@ -23,9 +23,9 @@ NEAR = (
     "phosphoglycerate_mutase",
 )
 
-#: ΔG′ as printed with the textbook's constants at 25 °C, kJ/mol (Garrett and Grisham, table of glycolysis in
-#: the erythrocyte). Ours differ through the constants alone: hexokinase and pyruvate kinase most (the textbook's
-#: −16.7 and −31.7 against −22.0 and −20.3 of the measured K′ carried to pH 7.2, 37 °C, pMg 3.5).
+#: ΔG′ as printed with the textbook's constants at 25 °C, kJ/mol (Garrett and Grisham, table of glycolysis
+#: in the erythrocyte). Ours differ through the constants alone: hexokinase and pyruvate kinase most (the
+#: textbook's −16.7 and −31.7 against −22.0 and −20.3 of the measured K′ carried to pH 7.2, 37 °C, pMg 3.5).
 PRINTED = {
     "hexokinase": -33.9,
     "glucose_6_phosphate_isomerase": -2.92,
@@ -67,8 +67,9 @@ def test_own_constants_agree_with_the_textbooks_within_their_uncertainty(review,
 
 
 def test_nothing_in_a_healthy_cell_is_called_reversed(review):
-    """Negative control: triose-phosphate isomerase (+2.4), mutase (+0.8) and enolase (+1.1) lie above zero in the
-    printed table, and isomerase and mutase with our constants too, through errors of constants and assays."""
+    """Negative control: triose-phosphate isomerase (+2.4), mutase (+0.8) and enolase (+1.1) lie above zero
+    in the printed table, and isomerase and mutase with our constants too, through errors of constants and
+    assays."""
     row, _ = at(review, "X", "hexokinase")
     reversed_steps = [
         review.columns[c].step.id
@@ -106,11 +107,14 @@ def test_lactate_dehydrogenase_is_assessed_only_when_the_reviewer_sets_the_ratio
 
 @pytest.mark.parametrize("total", [1e-6, 0.02, 5.0])
 def test_total_nadh_of_an_extract_never_changes_a_result(catalogue, total):
-    """Most NADH of a cell is bound; a total is never read as the free pool (Williamson, Lund and Krebs 1967)."""
+    """Most NADH of a cell is bound; a total is never read as the free pool (Williamson, Lund and Krebs
+    1967)."""
     controls = spread(RED_CELL, 8, np.random.default_rng(3))
     plain = assess(panel_of([*controls, Specimen("X", RED_CELL)]), catalogue)
     totals = {"nad": 60 * total, "nadh": total, "nadp": total, "nadph": 3 * total}
     with_totals = assess(panel_of([*controls, Specimen("X", RED_CELL | totals)]), catalogue)
     for name in ("ln_gamma", "delta_g", "delta_g_sd", "shift", "q_value", "assessability", "direction"):
-        np.testing.assert_array_equal(getattr(plain.findings, name), getattr(with_totals.findings, name), name)
+        np.testing.assert_array_equal(
+            getattr(plain.findings, name), getattr(with_totals.findings, name), name
+        )
     assert plain.state_of(8) == with_totals.state_of(8)
