@@ -1,4 +1,4 @@
-"""Writes a whole review into a folder, all or nothing: a killed or failed run leaves no half-written folder."""
+"""Writes a whole review into a folder, all or nothing: no run leaves a half-written folder."""
 
 from __future__ import annotations
 
@@ -222,5 +222,7 @@ def _told(out: Path, inside: Path | None = None) -> Iterator[None]:
         if inside is not None and named.is_relative_to(inside):
             named = out / named.relative_to(inside)
         reason = error.strerror or str(error) or type(error).__name__
-        what, remedy = _REMEDIES.get(error.errno or 0, (f"it cannot be written ({reason})", "choose another folder"))
+        what, remedy = _REMEDIES.get(
+            error.errno or 0, (f"it cannot be written ({reason})", "choose another folder")
+        )
         raise OutputFailed(named, what, remedy) from error

@@ -1,4 +1,4 @@
-"""All specimens of a study on one overview: steps × specimens with a mark each, and the steps that are off."""
+"""All specimens of a study on one overview: steps × specimens, a mark each, and the steps that are off."""
 
 from __future__ import annotations
 
@@ -46,8 +46,10 @@ _CELL_SIZE = 5.8
 _TALLEST = 96.0
 
 _LEGEND = (
-    "▲ pushed back, ▼ pushed forward, with the shift in kJ/mol: filled and on grey where highlighted, △ ▽ where "
-    "significant but under the floor. • as usual. Without a reference: fwd forward, rev reversed, und undecided, "
+    "▲ pushed back, ▼ pushed forward, with the shift in kJ/mol: filled and on grey where "
+    "highlighted, △ ▽ where "
+    "significant but under the floor. • as usual. Without a reference: fwd forward, rev reversed, "
+    "und undecided, "
     "? no constant known. In brackets: a proxy. – not measured; blank: not assessable in that matrix. "
     "≥, ≤: a bound from a value beyond a limit of quantification. def: defines the free pool."
 )
@@ -203,7 +205,7 @@ class _TurnedText(Flowable):
         self.height = height
         self._text = fitted(text, BOLD, 6.6, height - 3)
 
-    def wrap(self, available_width: float, available_height: float) -> tuple[float, float]:
+    def wrap(self, _width: float, _height: float) -> tuple[float, float]:
         """Its own size."""
         return self.width, self.height
 

@@ -1,4 +1,4 @@
-"""The page's typeface: DejaVu Sans in its condensed width, shipped in resources/fonts and embedded in every page."""
+"""The page's typeface: DejaVu Sans Condensed, shipped in resources/fonts and embedded in every page."""
 
 from __future__ import annotations
 

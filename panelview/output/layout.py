@@ -126,9 +126,7 @@ def table(
     )
 
 
-def small_table(
-    headings: Sequence[str], rows: Sequence[Sequence[str]], widths: Sequence[float]
-) -> LongTable:
+def small_table(headings: Sequence[str], rows: Sequence[Sequence[str]], widths: Sequence[float]) -> LongTable:
     """A table of wrapping small text."""
     body = [[paragraph(cell, SMALL) for cell in row] for row in rows]
     return table([[paragraph(h, SMALL_STRONG) for h in headings], *body], widths)
@@ -146,10 +144,13 @@ def beside(blocks: Sequence[list[Flowable]], widths: Sequence[float]) -> Table:
     return Table(
         [list(blocks)],
         colWidths=list(widths),
+        splitInRow=_LEAST_PIECE,
         hAlign="LEFT",
-        style=TableStyle([
-            ("FONT", (0, 0), (-1, -1), REGULAR, 6.6, 8.2),
-            ("VALIGN", (0, 0), (-1, -1), "TOP"),
-            *((side, (0, 0), (-1, -1), 0) for side in bare),
-        ]),
+        style=TableStyle(
+            [
+                ("FONT", (0, 0), (-1, -1), REGULAR, 6.6, 8.2),
+                ("VALIGN", (0, 0), (-1, -1), "TOP"),
+                *((side, (0, 0), (-1, -1), 0) for side in bare),
+            ]
+        ),
     )

@@ -1,4 +1,4 @@
-"""The appendix of a page: values as reported and as used, constants with their source, reference, provenance."""
+"""The appendix of a page: values as reported and as used, constants with source, reference, provenance."""
 
 from __future__ import annotations
 
@@ -36,12 +36,20 @@ _BASIS = {
 def reported_values(review: Review, specimen: int) -> list[Flowable]:
     """Every value as reported and as used, with its place in the file."""
     rows = [_reading(review, k) for k in readings_of(review, specimen)]
-    headings = ("Analyte", "As written", "Reported", "Place", "Used, mol per litre of the pool's water", "Remark")
+    headings = (
+        "Analyte",
+        "As written",
+        "Reported",
+        "Place",
+        "Used, mol per litre of the pool's water",
+        "Remark",
+    )
     story = section("Appendix A. Values as reported and as used")
     if not rows:
         return [*story, paragraph("The file holds no value for this specimen.")]
     factor = (
-        "± is the relative standard uncertainty of the assay, with “default” where the file gives none; values "
+        "± is the relative standard uncertainty of the assay, with “default” where the file gives "
+        "none; values "
         "converted with a factor that the specimen shares carry that factor's uncertainty besides."
     )
     widths = (92, 84, 72, 82, 92, WIDTH - 422)
@@ -52,7 +60,11 @@ def _reading(review: Review, k: int) -> tuple[str, ...]:
     r = review.panel.readings
     record = review.catalogue.metabolites.get(str(r.analyte[k]))
     known = {a.id: a.name for a in review.catalogue.known_analytes}
-    analyte = f"{record.symbol}: {record.name}" if record else known.get(str(r.analyte[k]), str(r.analyte[k]) or "–")
+    analyte = (
+        f"{record.symbol}: {record.name}"
+        if record
+        else known.get(str(r.analyte[k]), str(r.analyte[k]) or "–")
+    )
     flag = f" {r.flag[k]}" if r.flag[k] else ""
     reported = f"{r.value[k]} {r.unit[k]}{flag}".strip() or "empty"
     facts_ = review.specimens[int(r.specimen[k])]
@@ -95,7 +107,8 @@ def constants_used(review: Review, specimen: int) -> list[Flowable]:
     anchors = review.catalogue.constants.anchors
     sources = dict.fromkeys(anchors[s].source for s in sorted(used) if anchors[s].source)
     lead = (
-        f"At {conditions}. K′eq in powers of mol/L, water left out; ± is the standard uncertainty of the constant. "
+        f"At {conditions}. K′eq in powers of mol/L, water left out; ± is the standard uncertainty "
+        "of the constant. "
         f"Source codes and constants are from: {'; '.join(sources) or 'no source stated'}."
     )
     return [*story, paragraph(lead, SMALL), small_table(headings, rows, (88, 52, 62, 56, 140, WIDTH - 398))]
@@ -114,7 +127,8 @@ def _constant(review: Review, specimen: int, column: int) -> tuple[str, ...]:
     return (
         step_name(review, column),
         ratio_from_ln(float(f.ln_k_prime[specimen, column])) or "–",
-        with_sd(float(f.delta_g0_prime[specimen, column]), float(f.delta_g0_prime_sd[specimen, column])) or "–",
+        with_sd(float(f.delta_g0_prime[specimen, column]), float(f.delta_g0_prime_sd[specimen, column]))
+        or "–",
         _BASIS[constants.basis(index)],
         review.constant_source(column),
         "" if constants.basis(index) == "own" else constants.anchors[index].note,
@@ -143,8 +157,10 @@ def reference_of_steps(review: Review, specimen: int) -> list[Flowable]:
         return [*story, paragraph("No step could be compared with a reference.")]
     label = review.reference.label
     lead = (
-        f"{label[:1].upper()}{label[1:]}; matrix: {matrix_name(review, specimen)}. Limits are the 2.5th and 97.5th "
-        f"percentiles; none are claimed under {calls.LEAST_CONTROLS_FOR_INTERVAL} controls. A control is compared "
+        f"{label[:1].upper()}{label[1:]}; matrix: {matrix_name(review, specimen)}. Limits are the "
+        "2.5th and 97.5th "
+        f"percentiles; none are claimed under {calls.LEAST_CONTROLS_FOR_INTERVAL} controls. A "
+        "control is compared "
         "with the others, never with itself."
     )
     headings = ("Step", "n", "Mean ΔG′ ± SD, kJ/mol", "95 % limits of ΔG′", "95 % limits of the shift")
@@ -175,12 +191,16 @@ def provenance(review: Review) -> list[Flowable]:
 def _limits(review: Review) -> str:
     level = calls.DIRECTION_LEVEL
     return (
-        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, else undecided; "
-        "a step without a usual direction is called reversed only if it is also pushed back against the reference "
+        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, "
+        "else undecided; "
+        "a step without a usual direction is called reversed only if it is also pushed back "
+        "against the reference "
         f"or, without one, if Γ/K′eq exceeds {calls.NEAR_FACTOR:g}. "
-        f"Distance: near where Γ/K′eq lies within 1/{calls.NEAR_FACTOR:g} and {calls.NEAR_FACTOR:g}, far beyond "
+        f"Distance: near where Γ/K′eq lies within 1/{calls.NEAR_FACTOR:g} and "
+        f"{calls.NEAR_FACTOR:g}, far beyond "
         f"1/{calls.FAR_FACTOR:g} or {calls.FAR_FACTOR:g}. Shift: at a false discovery rate of "
         f"{100 * calls.FALSE_DISCOVERY_RATE:g} % over the specimen's steps; highlighted from "
-        f"{review.shift_floor:g} kJ/mol on. No test under {calls.LEAST_CONTROLS_FOR_TEST} controls, no reference "
+        f"{review.shift_floor:g} kJ/mol on. No test under {calls.LEAST_CONTROLS_FOR_TEST} "
+        "controls, no reference "
         f"interval under {calls.LEAST_CONTROLS_FOR_INTERVAL}."
     )

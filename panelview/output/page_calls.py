@@ -56,9 +56,7 @@ class Axes:
 def has_shift(review: Review, specimen: int) -> bool:
     """Whether any step of the specimen can be compared with a reference."""
     f = review.findings
-    return bool(
-        (np.isfinite(f.shift[specimen]) | ~np.isnan(f.shift_lower[specimen])).any()
-    )
+    return bool((np.isfinite(f.shift[specimen]) | ~np.isnan(f.shift_lower[specimen])).any())
 
 
 def highlighted_columns(review: Review, specimen: int) -> list[int]:
@@ -99,7 +97,10 @@ def _none_off(review: Review, specimen: int) -> str:
 def _block(review: Review, specimen: int, column: int, axes: Axes) -> Flowable:
     found = evidence(review, specimen, column)
     head = beside(
-        [[paragraph(step_title(review, column), CALL)], [paragraph(call_text(review, specimen, column), CALL_RIGHT)]],
+        [
+            [paragraph(step_title(review, column), CALL)],
+            [paragraph(call_text(review, specimen, column), CALL_RIGHT)],
+        ],
         [WIDTH * 0.6, WIDTH * 0.4],
     )
     parts: list[Flowable] = [

@@ -150,7 +150,8 @@ def _left_out(review: Review, specimen: int) -> list[Flowable]:
     read = ", ".join(f"{n} {_STATE_WORDS[state]}" for state, n in sorted(count.items()))
     lines: list[Flowable] = [
         marked(
-            f"{bold('What was read.')} {len(states)} values: {plain(read or 'none')}. Steps: {assessed} assessed, "
+            f"{bold('What was read.')} {len(states)} values: {plain(read or 'none')}. Steps: "
+            f"{assessed} assessed, "
             f"{proxies} as proxy, {off} highlighted; the rest with their reasons below."
         )
     ]

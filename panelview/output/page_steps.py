@@ -1,4 +1,4 @@
-"""The table of all steps that can be read, in pathway order with a strip each, and the list of those that cannot."""
+"""The table of all steps that can be read, with a strip each, and the list of those that cannot."""
 
 from __future__ import annotations
 
@@ -39,12 +39,17 @@ _STEP, _RATIO, _ENERGY, _CALL = 112.0, 50.0, 74.0, 60.0
 def readable_columns(review: Review, specimen: int) -> list[int]:
     """Assessed and proxy columns of a specimen, in pathway order."""
     levels = review.findings.assessability[specimen]
-    return in_pathway_order(review, [c for c in range(len(review.columns)) if levels[c] <= Assessability.PROXY])
+    return in_pathway_order(
+        review, [c for c in range(len(review.columns)) if levels[c] <= Assessability.PROXY]
+    )
 
 
 def in_pathway_order(review: Review, columns: Sequence[int]) -> list[int]:
     """Columns by pathway, in the order in which the catalogue first names each pathway."""
-    order = {name: k for k, name in enumerate(dict.fromkeys(_pathway(review, c) for c in range(len(review.columns))))}
+    order = {
+        name: k
+        for k, name in enumerate(dict.fromkeys(_pathway(review, c) for c in range(len(review.columns))))
+    }
     return sorted(columns, key=lambda c: (order[_pathway(review, c)], review.columns[c].index, c))
 
 
@@ -59,7 +64,12 @@ def steps(review: Review, specimen: int, axes: Axes) -> list[Flowable]:
     story = section("All steps that can be read, in pathway order", least=120)
     if not columns:
         return [*story, paragraph("No step can be read in this specimen; the reasons stand below.")]
-    return [*story, marked(plain(_legend(review, specimen)), TINY), gap(3), _table(review, specimen, columns, axes)]
+    return [
+        *story,
+        marked(plain(_legend(review, specimen)), TINY),
+        gap(3),
+        _table(review, specimen, columns, axes),
+    ]
 
 
 def _legend(review: Review, specimen: int) -> str:
@@ -70,11 +80,16 @@ def _legend(review: Review, specimen: int) -> str:
         else ""
     )
     return (
-        "Point: the specimen with its 95 % interval (large: highlighted; open: proxy; dashed diamond: rests on an "
-        "inferred free pool; bracket and arrow: a bound, from a value beyond a limit of quantification). Band: 95 % "
-        "reference interval; without one, bar and tick: reference mean ± SD, ticks below: single controls. On the "
-        f"ΔG′ axis the hairlines are Γ/K′eq = 1/5 and 5.{shift} Grey ends beyond ± 10 kJ/mol: scale compressed "
-        "sixfold. ± after a number is a standard uncertainty, after a shift the standard deviation among healthy "
+        "Point: the specimen with its 95 % interval (large: highlighted; open: proxy; dashed "
+        "diamond: rests on an "
+        "inferred free pool; bracket and arrow: a bound, from a value beyond a limit of "
+        "quantification). Band: 95 % "
+        "reference interval; without one, bar and tick: reference mean ± SD, ticks below: single "
+        "controls. On the "
+        f"ΔG′ axis the hairlines are Γ/K′eq = 1/5 and 5.{shift} Grey ends beyond ± 10 kJ/mol: "
+        "scale compressed "
+        "sixfold. ± after a number is a standard uncertainty, after a shift the standard "
+        "deviation among healthy "
         "specimens; n: controls."
     )
 
@@ -123,7 +138,10 @@ def _row(
     at = specimen, column
     gamma, k = ratio_from_ln(float(f.ln_gamma[at])), ratio_from_ln(float(f.ln_k_prime[at]))
     energy = bounds(
-        float(f.delta_g[at]), float(f.delta_g_sd[at]), float(f.delta_g_lower95[at]), float(f.delta_g_upper95[at])
+        float(f.delta_g[at]),
+        float(f.delta_g_sd[at]),
+        float(f.delta_g_lower95[at]),
+        float(f.delta_g_upper95[at]),
     )
     energies = plain(energy or "not known")
     if Axis.SHIFT in shown:
@@ -134,7 +152,9 @@ def _row(
     strips = []
     for axis in shown:
         strip = strip_of(review, specimen, column, axis)
-        strips.append(StripDrawing(strip, axes.scale(axis), width, _STRIP_HEIGHT, _note(review, at, axis, strip.reason)))
+        strips.append(
+            StripDrawing(strip, axes.scale(axis), width, _STRIP_HEIGHT, _note(review, at, axis, strip.reason))
+        )
     style = SMALL_STRONG if f.highlighted[at] else SMALL
     return [
         [
@@ -188,7 +208,11 @@ def not_read(review: Review, specimen: int) -> list[Flowable]:
     story = section("Steps not read, and why")
     if lacking:
         story.append(
-            marked(f"<b>Not measured ({len(lacking)} steps; what lacks in brackets):</b> {plain('; '.join(lacking))}.", SMALL)
+            marked(
+                f"<b>Not measured ({len(lacking)} steps; what lacks in brackets):</b> "
+                f"{plain('; '.join(lacking))}.",
+                SMALL,
+            )
         )
     rows = [
         [paragraph(_reason_words(-level, reason), SMALL), paragraph(", ".join(names), SMALL)]
@@ -209,4 +233,3 @@ _NOT_MEASURED = "not measured: "
 def _reason_words(level: int, reason: str) -> str:
     state = "Not assessable here" if level == Assessability.NOT_ASSESSABLE else "Missing"
     return f"{state}: {reason}" if reason else state
-

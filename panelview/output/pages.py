@@ -51,11 +51,12 @@ def _story(review: Review, specimen: int, when: datetime | None) -> list[Flowabl
 def _running(review: Review, specimen: int, when: datetime | None) -> Running:
     facts = review.specimens[specimen]
     who = f" · participant {facts.participant}" if facts.participant else ""
+    matrix = matrix_name(review, specimen)
     hashes = " ".join(s.sha256 for s in review.panel.sources)
     return Running(
         title=f"Metabolite panel review of specimen {facts.code}",
         left=f"Panel review · specimen {facts.code}{who}",
         foot=f"{versions(review)} · {printed(when)}",
-        subject=f"Enzyme-catalysed steps of specimen {facts.code} ({matrix_name(review, specimen)}). Research use only.",
+        subject=f"Enzyme-catalysed steps of specimen {facts.code} ({matrix}). Research use only.",
         identity=f"{facts.code} {hashes} {review.catalogue.sha256} {review.catalogue.constants.sha256}",
     )

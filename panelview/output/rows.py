@@ -1,4 +1,4 @@
-"""The rows of every table a review is written to: steps, drivers, state, intake; names and order are the contract's."""
+"""The rows of every table a review is written to, as the contract names them."""
 
 from __future__ import annotations
 

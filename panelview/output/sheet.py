@@ -1,4 +1,4 @@
-"""The sheet a page is printed on: A4, running head, caution and "page x of y" on each, the same bytes each time."""
+"""The sheet a page is printed on: A4, running head, caution and "page x of y", the same bytes each time."""
 
 from __future__ import annotations
 
@@ -65,9 +65,7 @@ def build(
         initialFontName=REGULAR,
         initialFontSize=8,
     )
-    frame = Frame(
-        SIDE, FOOT, size[0] - 2 * SIDE, size[1] - HEAD - FOOT, 0, 0, 0, 0, id="body"
-    )
+    frame = Frame(SIDE, FOOT, size[0] - 2 * SIDE, size[1] - HEAD - FOOT, 0, 0, 0, 0, id="body")
     template.addPageTemplates(PageTemplate(id="sheet", frames=[frame]))
     template.build(list(story), canvasmaker=partial(_Sheets, running=running, when=when))
 
@@ -79,7 +77,7 @@ class SectionMark(Flowable):
         super().__init__()
         self._title = title
 
-    def wrap(self, available_width: float, available_height: float) -> tuple[float, float]:
+    def wrap(self, _width: float, _height: float) -> tuple[float, float]:
         """Nothing."""
         return 0.0, 0.0
 
@@ -108,7 +106,7 @@ class _Sheets(Canvas):
         """Note a section that begins on the page in hand."""
         self._sections.append((title, top))
 
-    def showPage(self) -> None:
+    def showPage(self) -> None:  # noqa: N802 - reportlab calls it so
         """Keep the page for later."""
         self._held.append(dict(self.__dict__))
         self._startPage()
@@ -150,13 +148,17 @@ class _Sheets(Canvas):
 
 
 def fitted(text: str, font: str, size: float, room: float) -> str:
-    """`text`, shortened with “…” where it is wider than `room` pt; for running lines whose text stands in full elsewhere."""
+    """`text`, shortened with “…” where wider than `room` pt; the full text stands elsewhere."""
     if stringWidth(text, font, size) <= room:
         return text
-    kept = text
-    while kept and stringWidth(f"{kept}…", font, size) > room:
-        kept = kept[:-1]
-    return f"{kept}…"
+    room -= stringWidth("…", font, size)
+    kept = 0
+    for character in text:
+        room -= stringWidth(character, font, size)
+        if room < 0:
+            break
+        kept += 1
+    return f"{text[:kept]}…"
 
 
 class _Moment:

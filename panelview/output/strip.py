@@ -78,16 +78,24 @@ def strip_words(review: Review, specimen: int, column: int, axis: Axis) -> str:
     elif math.isfinite(strip.spread[0]):
         spread = f" ± {strip.spread[1]:.1f}" if math.isfinite(strip.spread[1]) else ""
         n = int(review.findings.reference_n[specimen, column])
-        parts.append(f"reference mean {signed(strip.spread[0])}{spread} ({n} controls)" if n
-                     else f"published mean {signed(strip.spread[0])}{spread}")
+        parts.append(
+            f"reference mean {signed(strip.spread[0])}{spread} ({n} controls)"
+            if n
+            else f"published mean {signed(strip.spread[0])}{spread}"
+        )
     parts.append(call_words(review, specimen, column))
-    kinds = [word for word, is_so in (("proxy", strip.proxy), ("rests on an inferred pool", strip.inferred)) if is_so]
+    kinds = [
+        word
+        for word, is_so in (("proxy", strip.proxy), ("rests on an inferred pool", strip.inferred))
+        if is_so
+    ]
     return "; ".join(parts + kinds) + "."
 
 
 def _value_words(what: str, strip: Strip) -> str:
     if math.isfinite(strip.value):
-        return f"{what} {signed(strip.value)} kJ/mol, 95 % interval {signed(strip.lower)} to {signed(strip.upper)}"
+        limits = f"{signed(strip.lower)} to {signed(strip.upper)}"
+        return f"{what} {signed(strip.value)} kJ/mol, 95 % interval {limits}"
     if math.isfinite(strip.upper):
         return f"{what} at most {signed(strip.upper)} kJ/mol"
     return f"{what} at least {signed(strip.lower)} kJ/mol"
@@ -125,7 +133,7 @@ def _on_distance(review: Review, specimen: int, column: int, common: dict[str, A
 
 
 def _controls(review: Review, specimen: int, column: int, axis: Axis) -> tuple[float, ...]:
-    """Single controls of the same matrix on this axis, where they are in the study and no interval is claimed."""
+    """Single controls of the study on this axis, of the same matrix, where no interval is claimed."""
     if review.findings.reference_n[specimen, column] >= LEAST_CONTROLS_FOR_INTERVAL:
         return ()
     members = review.reference.members.get(review.specimens[specimen].matrix)

@@ -1,4 +1,4 @@
-"""Draws balance strips and their axis on a page: vector lines, black and grey only, each state by its own mark."""
+"""Draws balance strips and their axis on a page: vector lines, black and grey, each state by its own mark."""
 
 from __future__ import annotations
 
@@ -36,7 +36,7 @@ class StripDrawing(Flowable):
         self._scale = scale
         self._note = note
 
-    def wrap(self, available_width: float, available_height: float) -> tuple[float, float]:
+    def wrap(self, _width: float, _height: float) -> tuple[float, float]:
         """The strip's own size, whatever room there is."""
         return self.width, self.height
 
@@ -137,7 +137,7 @@ class StripDrawing(Flowable):
             _arrow(canvas, right, middle, -1)
 
     def _point(self, canvas: Canvas) -> None:
-        """Full: assessed; open: proxy; hollow dashed diamond: rests on an inferred pool; large: highlighted."""
+        """Full: assessed; open: proxy; dashed diamond: rests on an inferred pool; large: highlighted."""
         strip = self._strip
         x, y = self._x(strip.value), self.height / 2
         radius = _RADIUS_STRONG if strip.side else _RADIUS
@@ -169,7 +169,7 @@ class AxisDrawing(Flowable):
         self._left = left
         self._right = right
 
-    def wrap(self, available_width: float, available_height: float) -> tuple[float, float]:
+    def wrap(self, _width: float, _height: float) -> tuple[float, float]:
         """The axis' own size."""
         return self.width, self.height
 

@@ -1,4 +1,4 @@
-"""Rows to CSV: UTF-8, comma, decimal point; NaN is empty, text that a spreadsheet would run is made harmless."""
+"""Rows to CSV: UTF-8, decimal point, NaN empty; text that a spreadsheet would run is made harmless."""
 
 from __future__ import annotations
 
@@ -33,8 +33,10 @@ _PLAIN_NUMBER = re.compile(r"[+-]?\d+([.,]\d+)?([eE][+-]?\d+)?")
 def cell(value: Value) -> str:
     """A value as it stands in a CSV file.
 
-    >>> cell(True), cell(-0.0), cell(float("nan")), cell(float("-inf")), cell(1 / 3), cell("=1+1"), cell("-5.2")
-    ('true', '0', '', '-inf', '0.333333333', "'=1+1", '-5.2')
+    >>> cell(True), cell(-0.0), cell(float("nan")), cell(float("-inf")), cell(1 / 3)
+    ('true', '0', '', '-inf', '0.333333333')
+    >>> cell("=1+1"), cell("-5.2")
+    ("'=1+1", '-5.2')
     """
     if isinstance(value, bool):
         return "true" if value else "false"

@@ -1,4 +1,4 @@
-"""Numbers, units and names as a reader sees them: true minus, fitting prefixes, uncertainty beside the value."""
+"""Numbers, units and names as a reader sees them: true minus, fitting prefixes, uncertainty beside."""
 
 from __future__ import annotations
 
@@ -38,22 +38,26 @@ CAUTION = (
 #: What every reader should keep in mind; printed on the page and shown in the window's help.
 CAUTIONS = (
     (
-        "A mass-action ratio tells how far a step is from equilibrium and which way it can run; it tells nothing of "
+        "A mass-action ratio tells how far a step is from equilibrium and which way it can run; "
+        "it tells nothing of "
         "flux or of enzyme activity."
     ),
     "A whole-specimen concentration averages compartments and cells that may differ.",
     "A step far from equilibrium need not be the one that controls the flux.",
     (
-        "Measured total nucleotides are not the free ones; free pools here are inferred from couples taken to be at "
+        "Measured total nucleotides are not the free ones; free pools here are inferred from "
+        "couples taken to be at "
         "equilibrium, or set by the reviewer."
     ),
     "That no shift is seen excludes nothing.",
     (
-        "Equilibrium constants come from experiments in vitro, carried to the stated conditions; their uncertainty "
+        "Equilibrium constants come from experiments in vitro, carried to the stated conditions; "
+        "their uncertainty "
         "is part of each interval."
     ),
     (
-        "A pattern is not specific: fasting, exercise, drugs, hypoxia, haemolysis, delay before quenching and a wrong "
+        "A pattern is not specific: fasting, exercise, drugs, hypoxia, haemolysis, delay before "
+        "quenching and a wrong "
         "unit can each give it."
     ),
     "A comparison is no better than its controls: see their number, matrix and handling.",
