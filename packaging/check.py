@@ -19,7 +19,7 @@ from environment import ROOT, as_command, child_environment, prepare
 
 #: Tests last, so that pytest's own closing line closes the run.
 _CHECKS = {
-    "ruff (style and likely mistakes)": ["ruff", "check", "."],
+    "ruff (style and likely mistakes)": ["ruff", "check", "--output-format=concise", "."],
     "mypy (types)": ["mypy"],
     "pytest (tests)": ["pytest"],
 }
