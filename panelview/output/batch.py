@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import errno
 import json
+import os
 import shutil
 import tempfile
 from collections.abc import Callable, Iterator, Sequence
@@ -61,7 +62,7 @@ def write_review(
     called with (done, total, file name); cancelled is asked between files; jobs: processes that draw
     pages. Returns the files written. Raises OutputFailed, OutputCancelled.
     """
-    out = Path(out)
+    out = Path(os.path.abspath(out))  # noqa: PTH100 - resolve() would follow a link and hide it
     with _told(out):
         _check_place(out)
         out.parent.mkdir(parents=True, exist_ok=True)
@@ -161,6 +162,8 @@ def _check_place(out: Path) -> None:
         raise OutputFailed(out, "is not a folder", "name a folder that does not exist yet")
     if not out.exists():
         return
+    if out == Path.cwd():
+        raise OutputFailed(out, "is the folder that the program runs in", "name a folder inside it")
     earlier = _earlier_files(out)
     foreign = sorted(p.name for p in out.iterdir() if p.name not in earlier or not p.is_file())
     if foreign:
@@ -208,6 +211,7 @@ _REMEDIES = {
     errno.EROFS: ("the disk is read-only", "choose a folder on another disk"),
     errno.ENAMETOOLONG: ("the name is too long", "choose a folder with a shorter path"),
     errno.ENOTDIR: ("a part of the path is a file, not a folder", "choose another folder"),
+    errno.EBUSY: ("the folder is in use", "close what uses it or choose another folder"),
     errno.EEXIST: ("a file of that name is in the way", "choose another folder"),
 }
 

@@ -46,12 +46,10 @@ _CELL_SIZE = 5.8
 _TALLEST = 96.0
 
 _LEGEND = (
-    "▲ pushed back, ▼ pushed forward, with the shift in kJ/mol: filled and on grey where "
-    "highlighted, △ ▽ where "
-    "significant but under the floor. • as usual. Without a reference: fwd forward, rev reversed, "
-    "und undecided, "
-    "? no constant known. In brackets: a proxy. – not measured; blank: not assessable in that matrix. "
-    "≥, ≤: a bound from a value beyond a limit of quantification. def: defines the free pool."
+    "▲ pushed back, ▼ pushed forward, with the shift in kJ/mol: filled and on grey where highlighted, △ ▽ "
+    "where significant but under the floor. • as usual. Without a reference: fwd forward, rev reversed, und "
+    "undecided, ? no constant known. In brackets: a proxy. – not measured; blank: not assessable in that "
+    "matrix. ≥, ≤: a bound from a value beyond a limit of quantification. def: defines the free pool."
 )
 
 

@@ -15,14 +15,14 @@ BOLD = "DejaVuSansCondensed-Bold"
 
 @cache
 def register_fonts() -> None:
-    """Make the faces known to reportlab, once. Raises FileNotFoundError where a face does not ship."""
+    """Make the faces known to reportlab, once. Raises RuntimeError where the installation lacks one."""
     from reportlab.pdfbase import pdfmetrics
     from reportlab.pdfbase.ttfonts import TTFont
 
     for name in (REGULAR, BOLD):
         path = face_path(name)
         if not path.is_file():
-            raise FileNotFoundError(path)
+            raise RuntimeError(f"the font {path.name} is missing from the installation")
         pdfmetrics.registerFont(TTFont(name, str(path)))
     # Bold inside a paragraph picks the bold face; there is no slanted one, so italics stay upright.
     pdfmetrics.registerFontFamily(REGULAR, normal=REGULAR, bold=BOLD, italic=REGULAR, boldItalic=BOLD)

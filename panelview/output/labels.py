@@ -53,6 +53,6 @@ def versions(review: Review) -> str:
     constants = review.catalogue.constants
     own = f" with {len(constants.own)} of the reviewer's own" if constants.own else ""
     return (
-        f"Panelview {review.program_version} · catalogue {review.catalogue.version} · "
-        f"constants {constants.version}{own}"
+        f"Panelview {review.program_version} · catalogue {review.catalogue.version} · constants "
+        f"{constants.version}{own}"
     )

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 
 import numpy as np
 from reportlab.platypus import Flowable
@@ -35,7 +36,8 @@ _BASIS = {
 
 def reported_values(review: Review, specimen: int) -> list[Flowable]:
     """Every value as reported and as used, with its place in the file."""
-    rows = [_reading(review, k) for k in readings_of(review, specimen)]
+    known = {a.id: a.name for a in review.catalogue.known_analytes}
+    rows = [_reading(review, k, known) for k in readings_of(review, specimen)]
     headings = (
         "Analyte",
         "As written",
@@ -48,23 +50,18 @@ def reported_values(review: Review, specimen: int) -> list[Flowable]:
     if not rows:
         return [*story, paragraph("The file holds no value for this specimen.")]
     factor = (
-        "± is the relative standard uncertainty of the assay, with “default” where the file gives "
-        "none; values "
-        "converted with a factor that the specimen shares carry that factor's uncertainty besides."
+        "± is the relative standard uncertainty of the assay, with “default” where the file gives none; "
+        "values converted with a factor that the specimen shares carry that factor's uncertainty besides."
     )
     widths = (92, 84, 72, 82, 92, WIDTH - 422)
     return [*story, paragraph(factor, SMALL), small_table(headings, rows, widths)]
 
 
-def _reading(review: Review, k: int) -> tuple[str, ...]:
+def _reading(review: Review, k: int, known: Mapping[str, str]) -> tuple[str, ...]:
     r = review.panel.readings
     record = review.catalogue.metabolites.get(str(r.analyte[k]))
-    known = {a.id: a.name for a in review.catalogue.known_analytes}
-    analyte = (
-        f"{record.symbol}: {record.name}"
-        if record
-        else known.get(str(r.analyte[k]), str(r.analyte[k]) or "–")
-    )
+    other = known.get(str(r.analyte[k]), str(r.analyte[k]) or "–")
+    analyte = f"{record.symbol}: {record.name}" if record else other
     flag = f" {r.flag[k]}" if r.flag[k] else ""
     reported = f"{r.value[k]} {r.unit[k]}{flag}".strip() or "empty"
     facts_ = review.specimens[int(r.specimen[k])]
@@ -107,9 +104,8 @@ def constants_used(review: Review, specimen: int) -> list[Flowable]:
     anchors = review.catalogue.constants.anchors
     sources = dict.fromkeys(anchors[s].source for s in sorted(used) if anchors[s].source)
     lead = (
-        f"At {conditions}. K′eq in powers of mol/L, water left out; ± is the standard uncertainty "
-        "of the constant. "
-        f"Source codes and constants are from: {'; '.join(sources) or 'no source stated'}."
+        f"At {conditions}. K′eq in powers of mol/L, water left out; ± is the standard uncertainty of the "
+        f"constant. Source codes and constants are from: {'; '.join(sources) or 'no source stated'}."
     )
     return [*story, paragraph(lead, SMALL), small_table(headings, rows, (88, 52, 62, 56, 140, WIDTH - 398))]
 
@@ -157,11 +153,9 @@ def reference_of_steps(review: Review, specimen: int) -> list[Flowable]:
         return [*story, paragraph("No step could be compared with a reference.")]
     label = review.reference.label
     lead = (
-        f"{label[:1].upper()}{label[1:]}; matrix: {matrix_name(review, specimen)}. Limits are the "
-        "2.5th and 97.5th "
-        f"percentiles; none are claimed under {calls.LEAST_CONTROLS_FOR_INTERVAL} controls. A "
-        "control is compared "
-        "with the others, never with itself."
+        f"{label[:1].upper()}{label[1:]}; matrix: {matrix_name(review, specimen)}. Limits are the 2.5th and "
+        f"97.5th percentiles; none are claimed under {calls.LEAST_CONTROLS_FOR_INTERVAL} controls. A control "
+        "is compared with the others, never with itself."
     )
     headings = ("Step", "n", "Mean ΔG′ ± SD, kJ/mol", "95 % limits of ΔG′", "95 % limits of the shift")
     widths = (130, 60, 120, 100, WIDTH - 410)
@@ -191,16 +185,12 @@ def provenance(review: Review) -> list[Flowable]:
 def _limits(review: Review) -> str:
     level = calls.DIRECTION_LEVEL
     return (
-        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, "
-        "else undecided; "
-        "a step without a usual direction is called reversed only if it is also pushed back "
-        "against the reference "
-        f"or, without one, if Γ/K′eq exceeds {calls.NEAR_FACTOR:g}. "
-        f"Distance: near where Γ/K′eq lies within 1/{calls.NEAR_FACTOR:g} and "
-        f"{calls.NEAR_FACTOR:g}, far beyond "
+        f"Direction: reversed where P(ΔG′ > 0) ≥ {level:g}, forward where it is ≤ {1 - level:.2g}, else "
+        "undecided; a step without a usual direction is called reversed only if it is also pushed back "
+        f"against the reference or, without one, if Γ/K′eq exceeds {calls.NEAR_FACTOR:g}. Distance: near "
+        f"where Γ/K′eq lies within 1/{calls.NEAR_FACTOR:g} and {calls.NEAR_FACTOR:g}, far beyond "
         f"1/{calls.FAR_FACTOR:g} or {calls.FAR_FACTOR:g}. Shift: at a false discovery rate of "
         f"{100 * calls.FALSE_DISCOVERY_RATE:g} % over the specimen's steps; highlighted from "
-        f"{review.shift_floor:g} kJ/mol on. No test under {calls.LEAST_CONTROLS_FOR_TEST} "
-        "controls, no reference "
-        f"interval under {calls.LEAST_CONTROLS_FOR_INTERVAL}."
+        f"{review.shift_floor:g} kJ/mol on. No test under {calls.LEAST_CONTROLS_FOR_TEST} controls, no "
+        f"reference interval under {calls.LEAST_CONTROLS_FOR_INTERVAL}."
     )

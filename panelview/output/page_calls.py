@@ -173,8 +173,8 @@ def _lines(found: Evidence) -> list[Flowable]:
         lines.append(marked(plain(found.equation_numbers), SMALL))
     lines.append(
         marked(
-            f"{bold('Constant.')} {plain(found.constant)}; {plain(found.constant_basis)}; "
-            f"source: {plain(found.constant_source)}.",
+            f"{bold('Constant.')} {plain(found.constant)}; {plain(found.constant_basis)}; source: "
+            f"{plain(found.constant_source)}.",
             SMALL,
         )
     )

@@ -150,19 +150,34 @@ def _left_out(review: Review, specimen: int) -> list[Flowable]:
     read = ", ".join(f"{n} {_STATE_WORDS[state]}" for state, n in sorted(count.items()))
     lines: list[Flowable] = [
         marked(
-            f"{bold('What was read.')} {len(states)} values: {plain(read or 'none')}. Steps: "
-            f"{assessed} assessed, "
-            f"{proxies} as proxy, {off} highlighted; the rest with their reasons below."
+            f"{bold('What was read.')} {len(states)} values: {plain(read or 'none')}. Steps: {assessed} "
+            f"assessed, {proxies} as proxy, {off} highlighted; the rest with their reasons below."
         )
     ]
-    problems = [p for p in left_out_problems(review, specimen) if p.severity is not Severity.NOTE]
+    unused = _unused_values(review, specimen)
+    problems = [p for p in problems_of(review, specimen) if p.severity is not Severity.NOTE]
     if not problems:
-        return [*lines, marked(f"{bold('Left out.')} Nothing was refused.")]
+        return [*lines, marked(f"{bold('Left out.')} {plain(unused or 'Nothing.')}")]
     cells = [
         [paragraph(_place(p), SMALL), paragraph(f"{p.severity.value}: {p.what}; {p.remedy}", SMALL)]
         for p in problems
     ]
-    return [*lines, marked(bold("Left out.")), table(cells, (130, WIDTH - 130), head=0, padding=1)]
+    left_out = marked(f"{bold('Left out.')} {plain(unused)}")
+    return [*lines, left_out, table(cells, (130, WIDTH - 130), head=0, padding=1)]
+
+
+def _unused_values(review: Review, specimen: int) -> str:
+    """Values that entered no step, by name and reason; "" where there are none."""
+    readings = review.panel.readings
+    by_state: dict[State, list[str]] = {}
+    for k in readings_of(review, specimen):
+        state = State(int(readings.state[k]))
+        if state in (State.SUM, State.UNMATCHED, State.REFUSED):
+            by_state.setdefault(state, []).append(str(readings.name[k]))
+    return " ".join(
+        f"{_STATE_WORDS[state].capitalize()}: {', '.join(names)}."
+        for state, names in sorted(by_state.items())
+    )
 
 
 _STATE_WORDS = {
@@ -181,7 +196,7 @@ def readings_of(review: Review, specimen: int) -> list[int]:
     return [int(k) for k in np.flatnonzero(review.panel.readings.specimen == specimen)]
 
 
-def left_out_problems(review: Review, specimen: int) -> list[Problem]:
+def problems_of(review: Review, specimen: int) -> list[Problem]:
     """Problems of this specimen and those of the file as a whole."""
     code = review.specimens[specimen].code
     return [p for p in review.panel.problems if p.specimen in ("", code)]
@@ -195,7 +210,7 @@ def _place(problem: Problem) -> str:
 
 def notes(review: Review, specimen: int) -> list[Flowable]:
     """What was assumed or noticed while reading the file."""
-    found = [p for p in left_out_problems(review, specimen) if p.severity is Severity.NOTE]
+    found = [p for p in problems_of(review, specimen) if p.severity is Severity.NOTE]
     if not found:
         return []
     cells = [[paragraph(_place(p), SMALL), paragraph(f"{p.what}; {p.remedy}", SMALL)] for p in found]

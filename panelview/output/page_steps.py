@@ -80,17 +80,12 @@ def _legend(review: Review, specimen: int) -> str:
         else ""
     )
     return (
-        "Point: the specimen with its 95 % interval (large: highlighted; open: proxy; dashed "
-        "diamond: rests on an "
-        "inferred free pool; bracket and arrow: a bound, from a value beyond a limit of "
-        "quantification). Band: 95 % "
-        "reference interval; without one, bar and tick: reference mean ± SD, ticks below: single "
-        "controls. On the "
-        f"ΔG′ axis the hairlines are Γ/K′eq = 1/5 and 5.{shift} Grey ends beyond ± 10 kJ/mol: "
-        "scale compressed "
-        "sixfold. ± after a number is a standard uncertainty, after a shift the standard "
-        "deviation among healthy "
-        "specimens; n: controls."
+        "Point: the specimen with its 95 % interval (large: highlighted; open: proxy; dashed diamond: rests "
+        "on an inferred free pool; bracket and arrow: a bound, from a value beyond a limit of "
+        "quantification). Band: 95 % reference interval; without one, bar and tick: reference mean ± SD, "
+        f"ticks below: single controls. On the ΔG′ axis the hairlines are Γ/K′eq = 1/5 and 5.{shift} Grey "
+        "ends beyond ± 10 kJ/mol: scale compressed sixfold. ± after a number is a standard uncertainty, "
+        "after a shift the standard deviation among healthy specimens; n: controls."
     )
 
 

@@ -31,34 +31,30 @@ __all__ = [
 
 #: Stands on the screen and on every page.
 CAUTION = (
-    "Research use only. Not for diagnosis or treatment. "
-    "Licensed clinical judgement and local regulations govern."
+    "Research use only. Not for diagnosis or treatment. Licensed clinical judgement and local regulations "
+    "govern."
 )
 
 #: What every reader should keep in mind; printed on the page and shown in the window's help.
 CAUTIONS = (
     (
-        "A mass-action ratio tells how far a step is from equilibrium and which way it can run; "
-        "it tells nothing of "
-        "flux or of enzyme activity."
+        "A mass-action ratio tells how far a step is from equilibrium and which way it can run; it tells "
+        "nothing of flux or of enzyme activity."
     ),
     "A whole-specimen concentration averages compartments and cells that may differ.",
     "A step far from equilibrium need not be the one that controls the flux.",
     (
-        "Measured total nucleotides are not the free ones; free pools here are inferred from "
-        "couples taken to be at "
-        "equilibrium, or set by the reviewer."
+        "Measured total nucleotides are not the free ones; free pools here are inferred from couples taken "
+        "to be at equilibrium, or set by the reviewer."
     ),
     "That no shift is seen excludes nothing.",
     (
-        "Equilibrium constants come from experiments in vitro, carried to the stated conditions; "
-        "their uncertainty "
-        "is part of each interval."
+        "Equilibrium constants come from experiments in vitro, carried to the stated conditions; their "
+        "uncertainty is part of each interval."
     ),
     (
-        "A pattern is not specific: fasting, exercise, drugs, hypoxia, haemolysis, delay before "
-        "quenching and a wrong "
-        "unit can each give it."
+        "A pattern is not specific: fasting, exercise, drugs, hypoxia, haemolysis, delay before quenching "
+        "and a wrong unit can each give it."
     ),
     "A comparison is no better than its controls: see their number, matrix and handling.",
 )

@@ -110,6 +110,15 @@ def test_a_file_in_the_place_of_the_folder_is_refused(plasma: Review, tmp_path: 
         write_review(plasma, tmp_path / "out")
 
 
+def test_the_folder_that_the_program_runs_in_is_refused(
+    plasma: Review, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.chdir(tmp_path)
+    with pytest.raises(OutputFailed, match="name a folder inside it"):
+        write_review(plasma, Path(), pdf=False)
+    assert not list(tmp_path.iterdir())
+
+
 def _failing_after(count: int, error: OSError) -> Callable[..., None]:
     """A writer of pages that fails at the page number `count`."""
     calls: list[int] = []

@@ -84,8 +84,8 @@ def test_steps_begin_with_the_columns_of_the_contract_in_their_order(tables: dic
         (
             "intake.csv",
             (
-                "specimen analyte_as_written analyte value_as_written unit_as_written mol_per_l sd_ln state row "
-                "column note"
+                "specimen analyte_as_written analyte value_as_written unit_as_written mol_per_l sd_ln "
+                "state row column note"
             ),
         ),
     ],

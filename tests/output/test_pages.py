@@ -140,6 +140,7 @@ def test_reported_and_used_values_and_their_place_are_printed(held_back: bytes, 
 def test_what_was_left_out_and_what_was_assumed_are_told(held_back: bytes) -> None:
     text = _flat("".join(_texts(held_back)))
     assert _flat("“Odd” is no analyte we know; rename the column") in text
+    assert _flat("Of an unknown name: odd.") in text
     assert _flat("no CV in the file; 5 % was taken for each assay") in text
 
 
