@@ -7,7 +7,6 @@ from collections.abc import Iterator, Sequence
 from panelview.assess.calls import Assessability, Direction, Distance, Shift
 from panelview.assess.drivers import drivers
 from panelview.assess.review import Codes, Review
-from panelview.intake.panel import Panel, State
 from panelview.thermo.physical import ZERO_CELSIUS
 
 #: A cell: text, truth, a whole number or a number (NaN where nothing is known).
@@ -83,20 +82,6 @@ STATE_COLUMNS = (
     "unit",
     "validity",
     "reason",
-)
-
-INTAKE_COLUMNS = (
-    "specimen",
-    "analyte_as_written",
-    "analyte",
-    "value_as_written",
-    "unit_as_written",
-    "mol_per_l",
-    "sd_ln",
-    "state",
-    "row",
-    "column",
-    "note",
 )
 
 
@@ -235,23 +220,4 @@ def state_rows(review: Review, specimen: int) -> Iterator[Row]:
             r.unit,
             r.validity,
             r.reason,
-        )
-
-
-def intake_rows(panel: Panel) -> Iterator[Row]:
-    """Every reported value as reported and as used, in file order."""
-    r = panel.readings
-    for k in range(len(r)):
-        yield (
-            panel.specimens[int(r.specimen[k])].code,
-            str(r.name[k]),
-            str(r.analyte[k]),
-            str(r.value[k]),
-            str(r.unit[k]),
-            float(r.mol_per_l[k]),
-            float(r.sd_ln[k]),
-            State(int(r.state[k])).word,
-            int(r.row[k]),
-            str(r.column[k]),
-            str(r.note[k]),
         )

@@ -9,15 +9,14 @@ from collections.abc import Iterable, Iterator, Sequence
 from pathlib import Path
 
 from panelview.assess.review import Review
+from panelview.intake.summary import INTAKE_COLUMNS, intake_rows
 from panelview.output.rows import (
     DRIVER_COLUMNS,
-    INTAKE_COLUMNS,
     STATE_COLUMNS,
     Row,
     StepRows,
     Value,
     driver_rows,
-    intake_rows,
     state_rows,
 )
 
