@@ -50,7 +50,7 @@ def assess(panel: Panel, catalogue: Catalogue, settings: Settings = _DEFAULT_SET
     for k, plan in enumerate(plans):
         rows = np.flatnonzero(plan_of == k)
         action = evaluate(plan, used, rows, constants)
-        readable, reason = readability.judge(plan, used, rows, action)
+        readable, reason = readability.judge(plan, used, rows)
         board.readability[rows], board.reason[rows] = readable, reason
         board.fill(plan, rows, action, constants.rt[rows][:, None])
         reference = group.against(plan, rows, action, constants.rt[rows], used)

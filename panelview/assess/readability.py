@@ -6,7 +6,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from panelview.assess.calls import Assessability
-from panelview.assess.mass_action import MassAction
 from panelview.assess.plan import Plan
 from panelview.assess.review import Concentrations, StepColumn
 from panelview.catalogue.load import Catalogue
@@ -39,7 +38,7 @@ class Readability:
         return tuple(self._texts)
 
     def judge(
-        self, plan: Plan, used: Concentrations, rows: NDArray[np.intp], action: MassAction
+        self, plan: Plan, used: Concentrations, rows: NDArray[np.intp]
     ) -> tuple[NDArray[np.int8], NDArray[np.int32]]:
         """Assessability codes and reason indices, both [specimen of the plan, column]."""
         shape = (len(rows), len(self._columns))

@@ -190,14 +190,14 @@ def _pairs(plan: Plan, specimen: _Specimen, row: int) -> list[StateRow]:
         if plan.matrix in _FLUIDS:
             judged = (
                 "proxy",
-                "stands in for cytosolic redox of the organs that release them; needs prompt "
-                "deproteinisation",
+                ("stands in for cytosolic redox of the organs that release them; needs prompt "
+                "deproteinisation"),
             )
             if specimen.amount("lactate") < LEAST_LACTATE:
                 judged = (
                     "proxy",
-                    "lactate under 2.5 mmol/L: the ratio does not separate causes (Debray et "
-                    "al. 2007), so it is shown and not called",
+                    ("lactate under 2.5 mmol/L: the ratio does not separate causes (Debray et "
+                    "al. 2007), so it is shown and not called"),
                 )
         rows.append(_row(row, "lactate_pyruvate_ratio", "extract", "lactate_dehydrogenase", log, "1", judged))
     if specimen.has("hydroxybutyrate_3", "acetoacetate"):

@@ -237,9 +237,12 @@ def fit(
     if start is not None:
         weights = _Weights(start.row_weight[rows], start.source_weight.copy(), start.enthalpy_weight.copy())
     estimate = np.zeros(system.design.shape[1])
-    for rounds in range(1, _LARGEST_ROUNDS + 1):
+    rounds = 0
+    while rounds < _LARGEST_ROUNDS:
+        rounds += 1
         normal, right, shrink = _normal_equations(system, rows, weights, source_sd)
-        previous, estimate = estimate, np.linalg.solve(normal, right)
+        previous = estimate
+        estimate = np.asarray(np.linalg.solve(normal, right))
         residual = system.residual[rows] - system.design[rows] @ estimate
         precision = weights.row / system.variance[rows]
         effect = shrink * np.bincount(source, precision * residual, minlength=n_sources)
@@ -252,7 +255,7 @@ def fit(
             break
     return Fit(
         estimate=estimate,
-        covariance=np.linalg.inv(normal),
+        covariance=np.asarray(np.linalg.inv(normal)),
         source_effect=effect,
         scatter=scatter,
         row_weight=weights.row,
