@@ -81,9 +81,7 @@ def test_probability_of_being_near_is_the_normal_mass_between_the_limits():
 class TestStepsWithoutAUsualDirection:
     """Healthy isomerases lie above zero in published tables; the sign alone must not call them reversed."""
 
-    def call(
-        self, ratio: float, shift: Shift, either: bool = True, direction: Direction = Direction.REVERSED
-    ):
+    def call(self, ratio: float, shift: Shift, either: bool = True, direction: Direction = Direction.REVERSED):
         return verdicts.without_usual_direction(
             np.array([[direction]], dtype=np.int8),
             np.array([either]),
