@@ -44,7 +44,8 @@ class PoolUse:
 class Plan:
     """Effective stoichiometry of every column for specimens of one matrix with the same pools known.
 
-    owner[column]: index of the column's own step; nu[column, analyte]: exponents of the measured concentrations, inferred pools eliminated;
+    owner[column]: index of the column's own step; nu[column, analyte]: exponents of the measured
+    concentrations, inferred pools eliminated;
     combination[column, step]: how many times each step's ΔrG′° enters ΔG′ (1 for the step itself);
     offset, offset_sd[column]: ln of the reviewer's ratios as they enter ln Γ, with standard uncertainty;
     blocked[column]: why the column cannot be evaluated ("" if it can); defines[column]: pool that the

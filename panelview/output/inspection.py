@@ -9,6 +9,7 @@ from typing import Any, TextIO
 from panelview.catalogue.load import Catalogue
 from panelview.intake.panel import Panel
 from panelview.intake.summary import INTAKE_COLUMNS, describe, intake_rows
+from panelview.output.tables import cell
 
 
 def print_inspection(panel: Panel, catalogue: Catalogue, how: str, to: TextIO) -> None:
