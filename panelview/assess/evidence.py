@@ -11,7 +11,7 @@ from panelview.assess.drivers import Driver, drivers, reference_ln_c
 from panelview.assess.effectors import EffectorFinding, effector_findings
 from panelview.assess.review import Review
 from panelview.assess.sentences import call_words, cautions, equation, equation_numbers, sentence
-from panelview.catalogue.couples import RATIO_POOLS
+from panelview.catalogue.couples import RATIO_POOLS, pool_name
 from panelview.catalogue.measurements import MeasuredConstant
 from panelview.intake.panel import State
 from panelview.thermo.physical import GAS_CONSTANT
@@ -104,7 +104,7 @@ def _constant_words(ln_k: float, delta_g0: float, sd: float) -> str:
     if not math.isfinite(delta_g0):
         return "no constant known"
     k = math.exp(ln_k)
-    digits = f"{k:.3g}" if 1e-3 <= k < 1e5 else _power(k)
+    digits = _power(k) if not 1e-3 <= k < 1e5 else f"{k:.3g}" if k < 1e3 else f"{k:.0f}"
     return f"K′eq = {digits}, ΔrG′° = {_signed(delta_g0)} ± {sd:.1f} kJ/mol (standard uncertainty)"
 
 
@@ -210,9 +210,9 @@ def _pool_words(review: Review, specimen: int, column: int) -> tuple[str, ...]:
     words = []
     for couple in plan.rests_on[column]:
         enzyme = next(s.enzyme for s in review.catalogue.steps if s.id == couple.step_id)
-        words.append(f"{couple.pool.replace('_', ' ')}: from {enzyme}. {couple.assumption}")
+        words.append(f"{', '.join(pool_name(couple.pool))}: from {enzyme}; {couple.assumption}")
     step = {i for i, _ in review.columns[column].step.stoichiometry}
     for use in plan.pools:
         if use.kind == "reviewer" and step & set(RATIO_POOLS[use.pool][:2]):
-            words.append(f"{use.pool.replace('_', ' ')}: set by the reviewer")
+            words.append(f"{', '.join(pool_name(use.pool))}: set by the reviewer")
     return tuple(words)

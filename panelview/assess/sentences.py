@@ -70,12 +70,12 @@ def sentence(review: Review, specimen: int, column: int, moved: tuple[Driver, ..
     level = Assessability(int(f.assessability[specimen, column]))
     reason = review.reason(specimen, column)
     if level in (Assessability.NOT_ASSESSABLE, Assessability.MISSING):
-        return f"{call_words(review, specimen, column).capitalize()}: {reason}."
+        return f"{call_words(review, specimen, column).capitalize()}: {reason.rstrip('.')}."
     parts = [_shift_sentence(review, specimen, column, moved), _position_sentence(review, specimen, column)]
     if level == Assessability.PROXY:
-        parts.append(f"Read as a proxy: {reason}.")
+        parts.append(f"Read as a proxy: {reason.rstrip('.')}.")
     elif reason:
-        parts.append(f"{reason[0].upper()}{reason[1:]}.")
+        parts.append(f"{reason[0].upper()}{reason[1:].rstrip('.')}.")
     return " ".join(p for p in parts if p)
 
 

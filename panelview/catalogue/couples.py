@@ -30,3 +30,15 @@ class IndicatorCouple:
     assumption: str
     limits: str
     source: str
+
+
+def pool_name(pool: str) -> tuple[str, str]:
+    """A pool id in words: its name and its compartment.
+
+    >>> pool_name("nadp_cytosol"), pool_name("adp_cytosol")
+    (('Free NADP⁺/NADPH', 'cytosol'), ('Free ADP', 'cytosol'))
+    """
+    if pool in RATIO_POOLS:
+        oxidised, _, place = RATIO_POOLS[pool]
+        return ("Free NADP⁺/NADPH" if oxidised == "nadp" else "Free NAD⁺/NADH"), place.replace("_", " ")
+    return f"Free {pool.removesuffix('_cytosol').upper()}", "cytosol"

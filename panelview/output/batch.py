@@ -226,7 +226,5 @@ def _told(out: Path, inside: Path | None = None) -> Iterator[None]:
         if inside is not None and named.is_relative_to(inside):
             named = out / named.relative_to(inside)
         reason = error.strerror or str(error) or type(error).__name__
-        what, remedy = _REMEDIES.get(
-            error.errno or 0, (f"it cannot be written ({reason})", "choose another folder")
-        )
+        what, remedy = _REMEDIES.get(error.errno or 0, (f"it cannot be written ({reason})", "choose another folder"))
         raise OutputFailed(named, what, remedy) from error

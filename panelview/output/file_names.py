@@ -6,9 +6,7 @@ import unicodedata
 from collections.abc import Iterable
 
 #: Names that Windows keeps for devices, with any extension.
-_RESERVED = frozenset(
-    ["con", "prn", "aux", "nul"] + [f"{port}{k}" for port in ("com", "lpt") for k in "0123456789¹²³"]
-)
+_RESERVED = frozenset(["con", "prn", "aux", "nul"] + [f"{port}{k}" for port in ("com", "lpt") for k in "0123456789¹²³"])
 
 #: UTF-8 bytes of a name without its ending; most systems take 255 with it.
 _LONGEST = 120

@@ -5,7 +5,6 @@ from __future__ import annotations
 from panelview.assess.calls import Assessability
 from panelview.assess.review import Review
 from panelview.assess.sentences import call_words
-from panelview.catalogue.couples import RATIO_POOLS
 from panelview.output.text import shown_id
 
 
@@ -32,14 +31,6 @@ def call_text(review: Review, specimen: int, column: int) -> str:
     words = call_words(review, specimen, column)
     is_proxy = review.findings.assessability[specimen, column] == Assessability.PROXY
     return f"{words} (proxy)" if is_proxy else words
-
-
-def pool_name(pool: str) -> tuple[str, str]:
-    """A pool id in words: its name and its compartment."""
-    if pool in RATIO_POOLS:
-        oxidised, _, place = RATIO_POOLS[pool]
-        return ("Free NADP⁺/NADPH" if oxidised == "nadp" else "Free NAD⁺/NADH"), shown_id(place)
-    return f"Free {pool.removesuffix('_cytosol').upper()}", "cytosol"
 
 
 def matrix_name(review: Review, specimen: int) -> str:

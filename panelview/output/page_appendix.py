@@ -123,8 +123,7 @@ def _constant(review: Review, specimen: int, column: int) -> tuple[str, ...]:
     return (
         step_name(review, column),
         ratio_from_ln(float(f.ln_k_prime[specimen, column])) or "–",
-        with_sd(float(f.delta_g0_prime[specimen, column]), float(f.delta_g0_prime_sd[specimen, column]))
-        or "–",
+        with_sd(float(f.delta_g0_prime[specimen, column]), float(f.delta_g0_prime_sd[specimen, column])) or "–",
         _BASIS[constants.basis(index)],
         review.constant_source(column),
         "" if constants.basis(index) == "own" else constants.anchors[index].note,

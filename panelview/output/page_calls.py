@@ -29,10 +29,15 @@ from panelview.output.scale import Axis, Scale, scale_of
 from panelview.output.sheet import WIDTH
 from panelview.output.strip import strip_of
 from panelview.output.strips import AxisDrawing, StripDrawing
-from panelview.output.text import concentration, relative
+from panelview.output.text import as_sentences, concentration, relative
 
 _STRIP_HEIGHT = 15.0
 _BETWEEN = 10.0
+
+#: Turning points outside this range, mol/L, are told as beyond it: no solution holds more, and less is
+#: under one molecule in a cell of a picolitre.
+_MOST_IN_SOLUTION = 10.0
+_LEAST_IN_SOLUTION = 1e-12
 
 
 class Axes:
@@ -125,9 +130,7 @@ def _strips(review: Review, specimen: int, column: int, axes: Axes) -> Flowable:
     for axis in (Axis.SHIFT, Axis.DISTANCE):
         strip = strip_of(review, specimen, column, axis)
         note = "no position on this axis: see the text" if strip.reason else ""
-        blocks.append(
-            [axes.drawing(axis, width), StripDrawing(strip, axes.scale(axis), width, _STRIP_HEIGHT, note)]
-        )
+        blocks.append([axes.drawing(axis, width), StripDrawing(strip, axes.scale(axis), width, _STRIP_HEIGHT, note)])
     return beside([blocks[0], [gap(1)], blocks[1]], [width, _BETWEEN, width])
 
 
@@ -140,15 +143,13 @@ def _terms(found: Evidence) -> Flowable:
             paragraph(_amount(term), SMALL),
             paragraph(term.origin, SMALL),
             paragraph(concentration(term.reference), SMALL),
-            paragraph(concentration(term.turning_point), SMALL),
+            paragraph(_turning_point(term), SMALL),
             paragraph(signed(driven[term.metabolite_id]) if term.metabolite_id in driven else "", SMALL),
         ]
         for term in found.terms
     ]
     if "conditions" in driven:
-        rows.append(
-            [paragraph(t, SMALL) for t in ("conditions", "", "", "", "", signed(driven["conditions"]))]
-        )
+        rows.append([paragraph(t, SMALL) for t in ("conditions", "", "", "", "", signed(driven["conditions"]))])
     headings = ("Reactant (ν)", "Specimen", "Origin", "Reference", "At equilibrium if", "Carries, kJ/mol")
     widths = (78, 100, 96, 78, 82, WIDTH - 434)
     return table([[paragraph(h, SMALL) for h in headings], *rows], widths, padding=0.9)
@@ -156,6 +157,17 @@ def _terms(found: Evidence) -> Flowable:
 
 def _nu(term: Term) -> str:
     return f"{term.nu:+g}".replace("-", "−") if term.nu else "through the pool"
+
+
+def _turning_point(term: Term) -> str:
+    """The concentration that would bring the step to equilibrium, where a solution can hold it."""
+    if math.isnan(term.turning_point):
+        return ""
+    if term.turning_point > _MOST_IN_SOLUTION:
+        return f"over {_MOST_IN_SOLUTION:g} mol/L"
+    if term.turning_point < _LEAST_IN_SOLUTION:
+        return f"under {concentration(_LEAST_IN_SOLUTION, 1)}"
+    return concentration(term.turning_point)
 
 
 def _amount(term: Term) -> str:
@@ -186,7 +198,7 @@ def _lines(found: Evidence) -> list[Flowable]:
     if told:
         lines.append(marked(f"{bold('Known effectors in the panel.')} {plain('; '.join(told))}.", SMALL))
     if found.pools:
-        lines.append(marked(f"{bold('Free pools.')} {plain(' '.join(found.pools))}", SMALL))
+        lines.append(marked(f"{bold('Free pools.')} {plain(as_sentences(found.pools))}", SMALL))
     if found.cautions:
-        lines.append(marked(f"{bold('Cautions.')} {plain(' '.join(found.cautions))}", SMALL))
+        lines.append(marked(f"{bold('Cautions.')} {plain(as_sentences(found.cautions))}", SMALL))
     return [gap(2), *lines]

@@ -10,9 +10,10 @@ from reportlab.platypus import Flowable, Table
 
 from panelview.assess.calls import Assessability
 from panelview.assess.review import Review
+from panelview.catalogue.couples import pool_name
 from panelview.intake.panel import State
 from panelview.intake.problems import Problem, Severity
-from panelview.output.labels import matrix_name, pool_name, versions
+from panelview.output.labels import matrix_name, versions
 from panelview.output.layout import (
     BOXED,
     SMALL,
@@ -75,9 +76,7 @@ def _title(review: Review, specimen: int, when: datetime | None) -> Table:
     left = [
         paragraph("Metabolite panel review", TITLE),
         gap(3),
-        marked(
-            f"Specimen {bold(facts_.code)} · participant {bold(facts_.participant or NOT_RECORDED)}", SUBTITLE
-        ),
+        marked(f"Specimen {bold(facts_.code)} · participant {bold(facts_.participant or NOT_RECORDED)}", SUBTITLE),
     ]
     right = [
         paragraph(versions(review), SMALL_RIGHT),
@@ -159,8 +158,7 @@ def _left_out(review: Review, specimen: int) -> list[Flowable]:
     if not problems:
         return [*lines, marked(f"{bold('Left out.')} {plain(unused or 'Nothing.')}")]
     cells = [
-        [paragraph(_place(p), SMALL), paragraph(f"{p.severity.value}: {p.what}; {p.remedy}", SMALL)]
-        for p in problems
+        [paragraph(_place(p), SMALL), paragraph(f"{p.severity.value}: {p.what}; {p.remedy}", SMALL)] for p in problems
     ]
     left_out = marked(f"{bold('Left out.')} {plain(unused)}")
     return [*lines, left_out, table(cells, (130, WIDTH - 130), head=0, padding=1)]
@@ -175,8 +173,7 @@ def _unused_values(review: Review, specimen: int) -> str:
         if state in (State.SUM, State.UNMATCHED, State.REFUSED):
             by_state.setdefault(state, []).append(str(readings.name[k]))
     return " ".join(
-        f"{_STATE_WORDS[state].capitalize()}: {', '.join(names)}."
-        for state, names in sorted(by_state.items())
+        f"{_STATE_WORDS[state].capitalize()}: {', '.join(names)}." for state, names in sorted(by_state.items())
     )
 
 

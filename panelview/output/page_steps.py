@@ -39,17 +39,12 @@ _STEP, _RATIO, _ENERGY, _CALL = 112.0, 50.0, 74.0, 60.0
 def readable_columns(review: Review, specimen: int) -> list[int]:
     """Assessed and proxy columns of a specimen, in pathway order."""
     levels = review.findings.assessability[specimen]
-    return in_pathway_order(
-        review, [c for c in range(len(review.columns)) if levels[c] <= Assessability.PROXY]
-    )
+    return in_pathway_order(review, [c for c in range(len(review.columns)) if levels[c] <= Assessability.PROXY])
 
 
 def in_pathway_order(review: Review, columns: Sequence[int]) -> list[int]:
     """Columns by pathway, in the order in which the catalogue first names each pathway."""
-    order = {
-        name: k
-        for k, name in enumerate(dict.fromkeys(_pathway(review, c) for c in range(len(review.columns))))
-    }
+    order = {name: k for k, name in enumerate(dict.fromkeys(_pathway(review, c) for c in range(len(review.columns))))}
     return sorted(columns, key=lambda c: (order[_pathway(review, c)], review.columns[c].index, c))
 
 
@@ -140,9 +135,7 @@ def _row(
     )
     energies = plain(energy or "not known")
     if Axis.SHIFT in shown:
-        shift = bounds(
-            float(f.shift[at]), float(f.shift_sd[at]), float(f.shift_lower[at]), float(f.shift_upper[at])
-        )
+        shift = bounds(float(f.shift[at]), float(f.shift_sd[at]), float(f.shift_lower[at]), float(f.shift_upper[at]))
         energies += f"<br/>{plain(_shift_with_n(review, specimen, column, shift))}"
     strips = []
     for axis in shown:
@@ -204,8 +197,7 @@ def not_read(review: Review, specimen: int) -> list[Flowable]:
     if lacking:
         story.append(
             marked(
-                f"<b>Not measured ({len(lacking)} steps; what lacks in brackets):</b> "
-                f"{plain('; '.join(lacking))}.",
+                f"<b>Not measured ({len(lacking)} steps; what lacks in brackets):</b> {plain('; '.join(lacking))}.",
                 SMALL,
             )
         )

@@ -124,8 +124,7 @@ class StepRows:
         facts = _facts(self._review, specimen)
         kept = written_columns(self._review, specimen)
         lists = [
-            [facts[name]] * len(kept) if name in facts else [by_name[name][c] for c in kept]
-            for name in self.columns
+            [facts[name]] * len(kept) if name in facts else [by_name[name][c] for c in kept] for name in self.columns
         ]
         return iter(zip(*lists, strict=True))
 

@@ -86,9 +86,7 @@ class Scale:
         kept = [side * LINEAR]
         between = [side * size for size in range(20, int(abs(end)), 20)]
         for value in (end, *between):
-            if abs(value) > LINEAR and all(
-                width * abs(self.at(value) - self.at(k)) >= label_width * 1.3 for k in kept
-            ):
+            if abs(value) > LINEAR and all(width * abs(self.at(value) - self.at(k)) >= label_width * 1.3 for k in kept):
                 kept.append(value)
         return kept[1:]
 

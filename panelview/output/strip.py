@@ -84,11 +84,7 @@ def strip_words(review: Review, specimen: int, column: int, axis: Axis) -> str:
             else f"published mean {signed(strip.spread[0])}{spread}"
         )
     parts.append(call_words(review, specimen, column))
-    kinds = [
-        word
-        for word, is_so in (("proxy", strip.proxy), ("rests on an inferred pool", strip.inferred))
-        if is_so
-    ]
+    kinds = [word for word, is_so in (("proxy", strip.proxy), ("rests on an inferred pool", strip.inferred)) if is_so]
     return "; ".join(parts + kinds) + "."
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 
 from panelview.assess.sentences import signed
 from panelview.thermo.physical import ZERO_CELSIUS
@@ -12,6 +12,7 @@ __all__ = [
     "CAUTION",
     "CAUTIONS",
     "MINUS",
+    "as_sentences",
     "bounds",
     "concentration",
     "condition",
@@ -30,10 +31,7 @@ __all__ = [
 ]
 
 #: Stands on the screen and on every page.
-CAUTION = (
-    "Research use only. Not for diagnosis or treatment. Licensed clinical judgement and local regulations "
-    "govern."
-)
+CAUTION = "Research use only. Not for diagnosis or treatment. Licensed clinical judgement and local regulations govern."
 
 #: What every reader should keep in mind; printed on the page and shown in the window's help.
 CAUTIONS = (
@@ -243,6 +241,15 @@ def state_interval(lower: float, upper: float, unit: str) -> str:
 def quantity_name(quantity: str) -> str:
     """The words for a quantity id of state.csv."""
     return _QUANTITIES.get(quantity, shown_id(quantity))
+
+
+def as_sentences(parts: Iterable[str]) -> str:
+    """Texts as sentences after one another, each with a capital and one full stop.
+
+    >>> as_sentences(["free ADP is better", "Seen in vitro."])
+    'Free ADP is better. Seen in vitro.'
+    """
+    return " ".join(f"{p[0].upper()}{p[1:].rstrip('. ')}." for p in parts if p)
 
 
 def shown_id(identifier: str) -> str:
