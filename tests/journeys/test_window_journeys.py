@@ -160,7 +160,7 @@ def test_the_whole_review_by_keyboard_alone(qtbot, window, red_cells, monkeypatc
     assert window.steps.axis is not axis
 
     qtbot.keyClick(table, Qt.Key.Key_F, Qt.KeyboardModifier.ControlModifier)
-    qtbot.keyClicks(QApplication.focusWidget(), "pyruvate kinase")
+    qtbot.keyClicks(QApplication.focusWidget(), "2.7.1.40")
     assert [
         window.reviewing.review.columns[c].step.id for c in window.steps.model.rows if isinstance(c, int)
     ] == ["pyruvate_kinase"]
