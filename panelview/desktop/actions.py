@@ -134,8 +134,6 @@ def keyboard_rows() -> list[tuple[str, str, str]]:
     rows = []
     for spec in SPECS:
         if spec.keys:
-            keys = " or ".join(
-                QKeySequence(k).toString(QKeySequence.SequenceFormat.NativeText) for k in spec.keys
-            )
+            keys = " or ".join(QKeySequence(k).toString(QKeySequence.SequenceFormat.NativeText) for k in spec.keys)
             rows.append((spec.menu.replace("&", ""), spec.text.replace("&", "").removesuffix(" …"), keys))
     return rows

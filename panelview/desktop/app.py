@@ -38,9 +38,7 @@ def run(
     application = make_application()
     store = QSettings()
     window = MainWindow(settings or Settings(), theme_of(application, store), store)
-    faults.install(
-        lambda text: QTimer.singleShot(0, window, lambda: window.notice.tell(Severity.REFUSAL, text))
-    )
+    faults.install(lambda text: QTimer.singleShot(0, window, lambda: window.notice.tell(Severity.REFUSAL, text)))
     window.show()
     if exit_after_paint:
         _leave_when_painted(window, argv_file is not None)
@@ -80,9 +78,7 @@ def _leave_when_painted(window: MainWindow, has_file: bool) -> None:
         print(f"panelview: an internal fault ({type(error).__name__}) stopped the review", file=sys.stderr)
         QCoreApplication.exit(_FAILED)
 
-    window.steps.table.painted.connect(
-        lambda: QCoreApplication.exit(_DONE), Qt.ConnectionType.QueuedConnection
-    )
+    window.steps.table.painted.connect(lambda: QCoreApplication.exit(_DONE), Qt.ConnectionType.QueuedConnection)
     window.reviewing.refused.connect(refused)
     window.reviewing.choice_refused.connect(choice_refused)
     window.reviewing.faulted.connect(faulted)

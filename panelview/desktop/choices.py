@@ -21,9 +21,7 @@ def with_condition(
         earlier = settings.conditions.get(field)
         chosen = {**settings.conditions, field: _merged(earlier, value, sd)}
         single = {code: _without(own, field) for code, own in settings.specimen_conditions.items()}
-        return replace(
-            settings, conditions=chosen, specimen_conditions={c: own for c, own in single.items() if own}
-        )
+        return replace(settings, conditions=chosen, specimen_conditions={c: own for c, own in single.items() if own})
     own = settings.specimen_conditions.get(specimen, {})
     changed = {**own, field: _merged(own.get(field), value, sd)}
     return replace(settings, specimen_conditions={**settings.specimen_conditions, specimen: changed})

@@ -40,8 +40,8 @@ class _Kind:
 
 _KINDS = (
     _Kind("ph", "pH", "", 0.0, 0.05, 0.01, 2),
-    _Kind("temperature", "Temperature", " °C", ZERO_CELSIUS, 0.5, 0.1, 1),
-    _Kind("ionic_strength", "Ionic strength", " mol/L", 0.0, 0.01, 0.01, 3),
+    _Kind("temperature", "Temperature", "°C", ZERO_CELSIUS, 0.5, 0.1, 1),
+    _Kind("ionic_strength", "Ionic strength", "mol/L", 0.0, 0.01, 0.01, 3),
     _Kind("pmg", "pMg", "", 0.0, 0.1, 0.05, 2),
 )
 
@@ -49,13 +49,12 @@ _KINDS = (
 class NumberField(QDoubleSpinBox):
     """A number with a point or a comma; takes any number, so that the model can say what it refuses."""
 
-    def __init__(self, decimals: int, step: float, suffix: str, lowest: float = -1000.0) -> None:
+    def __init__(self, decimals: int, step: float, lowest: float = -1000.0) -> None:
         super().__init__()
         self.setLocale(QLocale.c())
         self.setDecimals(decimals)
         self.setSingleStep(step)
         self.setRange(lowest, 1000.0)
-        self.setSuffix(suffix)
         self.setKeyboardTracking(False)
         self.setAlignment(Qt.AlignmentFlag.AlignRight)
         self.setButtonSymbols(QDoubleSpinBox.ButtonSymbols.UpDownArrows)
@@ -88,15 +87,15 @@ class ConditionField(QWidget):
         self._kind = kind
         label = LABELS[kind.field]
         low, high = (x - kind.offset for x in LIMITS[kind.field])
-        tip = f"{kind.label} of the specimen; the model holds from {low:g} to {high:g}{kind.unit}"
-        self.value = NumberField(kind.decimals, kind.step, kind.unit)
-        self.value.setAccessibleName(f"{label} of the specimen")
+        tip = f"{kind.label} of the specimen; the model holds from {low:g} to {high:g} {kind.unit}".strip()
+        self.value = NumberField(kind.decimals, kind.step)
+        self.value.setAccessibleName(f"{label} of the specimen, {kind.unit}".rstrip(", "))
         self.value.setToolTip(tip)
-        self.sd = NumberField(kind.decimals, kind.sd_step, "", lowest=0.0)
+        self.sd = NumberField(kind.decimals, kind.sd_step, lowest=0.0)
         self.sd.setAccessibleName(f"standard uncertainty of {label}")
         self.sd.setToolTip(f"Standard uncertainty of {label}")
         self.sd.setPrefix("± ")
-        self.name = QLabel(kind.label)
+        self.name = QLabel(f"{kind.label}, {kind.unit}" if kind.unit else kind.label)
         self.origin = QLabel()
         self.origin.setProperty("role", "origin")
         self.value.valueChanged.connect(lambda v: self.edited.emit(kind.field, v + kind.offset, math.nan))
@@ -155,7 +154,7 @@ class ConditionsBar(QWidget):
         self.ratios.clicked.connect(self.ratios_asked)
         self.ratios_origin = QLabel()
         self.ratios_origin.setProperty("role", "origin")
-        self.floor = NumberField(1, 0.5, " kJ/mol", lowest=0.0)
+        self.floor = NumberField(1, 0.5, lowest=0.0)
         self.floor.setAccessibleName("Smallest shift that is highlighted")
         self.floor.setToolTip("Smallest shift that is highlighted, kJ/mol")
         self.floor.valueChanged.connect(self._set_floor)
@@ -177,7 +176,7 @@ class ConditionsBar(QWidget):
         for field in self.fields.values():
             layout.addWidget(field)
         layout.addWidget(_stack(QLabel("Free cofactor ratios"), self.ratios, self.ratios_origin))
-        layout.addWidget(_stack(QLabel("Highlight from"), self.floor, self.floor_origin))
+        layout.addWidget(_stack(QLabel("Highlight from, kJ/mol"), self.floor, self.floor_origin))
         layout.addStretch(1)
         layout.addWidget(_stack(QLabel("Changes apply to"), self.scope, self.reset))
 

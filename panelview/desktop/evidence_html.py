@@ -139,9 +139,7 @@ def _detail(detail: str) -> str:
 
 def _constant(evidence: Evidence) -> str:
     count = len(evidence.measurements)
-    measured = (
-        f"{count} measurement{'' if count == 1 else 's'} on record" if count else "no measurement on record"
-    )
+    measured = f"{count} measurement{'' if count == 1 else 's'} on record" if count else "no measurement on record"
     rows = "".join(_measurement(m) for m in evidence.measurements[:MOST_MEASUREMENTS])
     head = "<tr><th>K′</th><th>at</th><th>Source, grade</th></tr>"
     table = f"<table cellspacing='0' width='100%'>{head}{rows}</table>" if rows else ""

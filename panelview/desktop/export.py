@@ -78,9 +78,7 @@ def table_text(review: Review, specimen: int, columns: list[int], axis: Axis, de
 
 def _safe(text: str) -> str:
     """Text that a spreadsheet will not take for a formula (OWASP, CSV injection)."""
-    is_number = (
-        text.replace("+", "").replace("−", "").replace("±", "").replace(" ", "").replace(".", "").isdigit()
-    )
+    is_number = text.replace("+", "").replace("−", "").replace("±", "").replace(" ", "").replace(".", "").isdigit()
     return f"'{text}" if text[:1] in ("=", "+", "-", "@", "\t") and not is_number else text
 
 

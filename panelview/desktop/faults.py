@@ -25,9 +25,7 @@ def report_text(kind: type[BaseException], trace: TracebackType | None) -> str:
         f"Panelview {panelview.__version__}, Python {python}, Qt {qVersion()}, {system}",
         f"{kind.__name__} in:",
     ]
-    lines += [
-        f"  {Path(frame.filename).name}:{frame.lineno} {frame.name}" for frame in traceback.extract_tb(trace)
-    ]
+    lines += [f"  {Path(frame.filename).name}:{frame.lineno} {frame.name}" for frame in traceback.extract_tb(trace)]
     return "\n".join(lines) + "\n"
 
 
@@ -64,11 +62,7 @@ def install(tell: Callable[[str], None], folder: Path | None = None) -> None:
         if issubclass(kind, KeyboardInterrupt):
             sys.__excepthook__(kind, error, trace)
             return
-        tell(
-            fault_sentence(write_report(report_text(kind, trace), folder or report_folder(), datetime.now()))
-        )
+        tell(fault_sentence(write_report(report_text(kind, trace), folder or report_folder(), datetime.now())))
 
     sys.excepthook = handle
-    threading.excepthook = lambda args: handle(
-        args.exc_type, args.exc_value or args.exc_type(), args.exc_traceback
-    )
+    threading.excepthook = lambda args: handle(args.exc_type, args.exc_value or args.exc_type(), args.exc_traceback)

@@ -143,9 +143,7 @@ class FreeRatiosDialog(QDialog):
         text = self.edits[pool].text().strip().replace(",", ".")
         value = _number(text)
         if value is None:
-            self.problem.setText(
-                f"“{self.edits[pool].text()}” is no ratio; give a number above 0, such as 700."
-            )
+            self.problem.setText(f"“{self.edits[pool].text()}” is no ratio; give a number above 0, such as 700.")
             self.edits[pool].setFocus()
             return
         self.problem.clear()

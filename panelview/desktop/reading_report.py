@@ -41,10 +41,7 @@ def summary(panel: Panel) -> str:
 def problem_rows(panel: Panel) -> list[tuple[str, ...]]:
     """One row a problem or assumption, the gravest first, in file order within a kind."""
     ordered = sorted(panel.problems, key=lambda p: (_ORDER.index(p.severity), p.file, p.row))
-    return [
-        (p.severity.value, str(p.row) if p.row else "", p.column, p.specimen, p.what, p.remedy)
-        for p in ordered
-    ]
+    return [(p.severity.value, str(p.row) if p.row else "", p.column, p.specimen, p.what, p.remedy) for p in ordered]
 
 
 def left_out(panel: Panel) -> str:

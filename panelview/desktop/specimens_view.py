@@ -70,14 +70,15 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     """
     controls = set(review.reference.specimens)
     wanted = text.casefold().strip()
-    has_several = len({s.matrix for s in review.specimens}) > 1
+    others = [s for i, s in enumerate(review.specimens) if i not in controls]
+    telling = _Telling(len({s.group for s in others}) > 1, len({s.matrix for s in others}) > 1)
     of_participant: dict[str, list[Entry]] = {}
     of_controls: list[Entry] = []
     for i, facts in enumerate(review.specimens):
         searched = f"{facts.code} {facts.participant} {facts.group} {facts.matrix}".casefold()
         if wanted and wanted not in searched:
             continue
-        entry = _entry(review, i, i in controls, has_several)
+        entry = _entry(review, i, i in controls, telling)
         if entry.is_control:
             of_controls.append(entry)
         else:
@@ -95,11 +96,18 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     return made
 
 
-def _entry(review: Review, specimen: int, is_control: bool, has_matrices: bool) -> Entry:
-    """One specimen; its matrix is told where the panel holds several."""
+@dataclass(frozen=True, slots=True)
+class _Telling:
+    """Which facts differ between the specimens, and so are worth a word in the list."""
+
+    group: bool
+    matrix: bool
+
+
+def _entry(review: Review, specimen: int, is_control: bool, telling: _Telling) -> Entry:
     facts = review.specimens[specimen]
-    words = [facts.collected, facts.group if not is_control else ""]
-    if has_matrices:
+    words = [facts.collected, facts.group if telling.group and not is_control else ""]
+    if telling.matrix:
         matrix = review.catalogue.matrices.get(facts.matrix)
         words.append(matrix.name if matrix else "matrix not stated")
     return Entry(

@@ -85,9 +85,7 @@ class StepModel(QAbstractTableModel):
             return Qt.ItemFlag.NoItemFlags
         return Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable | Qt.ItemFlag.ItemNeverHasChildren
 
-    def headerData(
-        self, section: int, orientation: Qt.Orientation, role: int = Qt.ItemDataRole.DisplayRole
-    ) -> Any:
+    def headerData(self, section: int, orientation: Qt.Orientation, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         if orientation is not Qt.Orientation.Horizontal:
             return None
         cell = Cell(section)
@@ -160,6 +158,4 @@ class StepModel(QAbstractTableModel):
             return spoken(self._shown, self._specimen, column, cell, self._axis)
         if cell is Cell.CALL:
             return self.text(column, cell)
-        return (
-            f"{HEADINGS[cell].splitlines()[0]}: {self.text(column, cell)}" if self.text(column, cell) else ""
-        )
+        return f"{HEADINGS[cell].splitlines()[0]}: {self.text(column, cell)}" if self.text(column, cell) else ""

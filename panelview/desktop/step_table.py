@@ -83,8 +83,11 @@ class StepTable(QTableView):
             return
         row = model.row_of(column)
         if row >= 0:
-            self.setCurrentIndex(model.index(row, 0))
-            self.scrollTo(model.index(row, 0))
+            index = model.index(row, 0)
+            is_seen = self.viewport().rect().contains(self.visualRect(index))
+            self.setCurrentIndex(index)
+            if not is_seen:
+                self.scrollTo(index, QAbstractItemView.ScrollHint.PositionAtCenter)
         else:
             self.clearSelection()
 

@@ -58,12 +58,8 @@ class StepsView(QWidget):
         self.heading.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self.heading.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         self._axis_buttons = {
-            Axis.SHIFT: _segment(
-                "&Shift against controls", "left", "How far each step stands from the controls"
-            ),
-            Axis.DISTANCE: _segment(
-                "&Distance from equilibrium", "right", "ΔG′ of each step; 0 is equilibrium"
-            ),
+            Axis.SHIFT: _segment("&Shift against controls", "left", "How far each step stands from the controls"),
+            Axis.DISTANCE: _segment("&Distance from equilibrium", "right", "ΔG′ of each step; 0 is equilibrium"),
         }
         self._axis_group = QButtonGroup(self)
         for axis, button in self._axis_buttons.items():

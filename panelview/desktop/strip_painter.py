@@ -136,9 +136,7 @@ class StripPainter:
     @staticmethod
     def _bracket(painter: QPainter, x: float, y: float, inward: int) -> None:
         tip = x + 4 * inward
-        painter.drawPolyline(
-            [QPointF(tip, y - 6.5), QPointF(x, y - 6.5), QPointF(x, y + 6.5), QPointF(tip, y + 6.5)]
-        )
+        painter.drawPolyline([QPointF(tip, y - 6.5), QPointF(x, y - 6.5), QPointF(x, y + 6.5), QPointF(tip, y + 6.5)])
 
     def _point(self, painter: QPainter, area: QRectF, strip: Strip) -> None:
         ink = self._ink(strip)

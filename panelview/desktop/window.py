@@ -105,9 +105,7 @@ class MainWindow(QMainWindow):
         reviewing = self.reviewing
         reviewing.opened.connect(self._show_review)
         reviewing.refused.connect(self.desk.tell_refused)
-        reviewing.choice_refused.connect(
-            lambda text: self.notice.tell(Severity.REFUSAL, self.desk.choice_text(text))
-        )
+        reviewing.choice_refused.connect(lambda text: self.notice.tell(Severity.REFUSAL, self.desk.choice_text(text)))
         reviewing.reviewed.connect(self.desk.note_followed)
         reviewing.matrix_wanted.connect(self.desk.ask_matrix)
         reviewing.faulted.connect(self.desk.raise_fault)
