@@ -12,7 +12,7 @@ from PySide6.QtCore import (
     QSortFilterProxyModel,
     Qt,
 )
-from PySide6.QtGui import QResizeEvent
+from PySide6.QtGui import QResizeEvent, QShowEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QLabel,
@@ -126,8 +126,14 @@ class TextTableView(QTableView):
         if event.oldSize().width() != event.size().width():
             self._fit()
 
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        self._fit()
+
     def _fit(self) -> None:
         """Widths from the first rows' texts, no column wider than a third of the table."""
+        if not self.texts.rows or not self.isVisible():
+            return
         header = self.horizontalHeader()
         header.setResizeContentsPrecision(60)
         self.resizeColumnsToContents()

@@ -7,7 +7,7 @@ from string import Template
 
 from PySide6.QtCore import QObject, Qt, Signal
 from PySide6.QtGui import QGuiApplication
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QWidget
 
 from panelview.desktop.palette import Colours, colours_of, qt_palette
 from panelview.resource_files import resources
@@ -30,9 +30,15 @@ class Theme(QObject):
         self._sheet = Template((resources() / "window.qss").read_text(encoding="utf-8"))
         self.choice = choice
         self.colours = colours_of(self._is_dark())
+        self._window: QWidget | None = None
         application.setStyle("Fusion")
-        self._dress()
+        application.setPalette(qt_palette(self.colours))
         QGuiApplication.styleHints().colorSchemeChanged.connect(lambda _: self._follow())
+
+    def dress(self, window: QWidget) -> None:
+        """Dress a window that is complete: a style sheet set earlier is worked out anew for every widget added."""
+        self._window = window
+        window.setStyleSheet(style_sheet(self._sheet, self.colours))
 
     def choose(self, choice: Choice) -> None:
         self.choice = choice
@@ -42,17 +48,15 @@ class Theme(QObject):
         wanted = colours_of(self._is_dark())
         if wanted is not self.colours:
             self.colours = wanted
-            self._dress()
+            self._application.setPalette(qt_palette(wanted))
+            if self._window is not None:
+                self.dress(self._window)
             self.changed.emit(wanted)
 
     def _is_dark(self) -> bool:
         if self.choice is Choice.SYSTEM:
             return QGuiApplication.styleHints().colorScheme() == Qt.ColorScheme.Dark
         return self.choice is Choice.DARK
-
-    def _dress(self) -> None:
-        self._application.setPalette(qt_palette(self.colours))
-        self._application.setStyleSheet(style_sheet(self._sheet, self.colours))
 
 
 def style_sheet(sheet: Template, colours: Colours) -> str:

@@ -45,6 +45,7 @@ class MainWindow(QMainWindow):
         self._lay_out()
         self.desk = Desk(self)
         self._wire()
+        theme.dress(self)
         self._dress(theme.colours)
         self._restore()
         self._show_start()
