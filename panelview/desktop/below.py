@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 from PySide6.QtCore import (
@@ -9,7 +10,6 @@ from PySide6.QtCore import (
     QModelIndex,
     QObject,
     QPersistentModelIndex,
-    QSortFilterProxyModel,
     Qt,
 )
 from PySide6.QtGui import QResizeEvent, QShowEvent
@@ -26,9 +26,9 @@ from panelview.assess.review import Review, StateRow
 from panelview.desktop.reading_report import (
     PROBLEM_HEADINGS,
     VALUE_HEADINGS,
+    ValueRows,
     problem_rows,
     summary,
-    value_rows,
 )
 from panelview.desktop.reviewing import Reviewing
 from panelview.output.text import quantity_name, shown_id, state_interval, state_value
@@ -59,15 +59,15 @@ class TextTable(QAbstractTableModel):
     def __init__(self, headings: tuple[str, ...], parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._headings = headings
-        self._rows: list[tuple[str, ...]] = []
+        self._rows: Sequence[tuple[str, ...]] = ()
 
-    def show(self, rows: list[tuple[str, ...]]) -> None:
+    def show(self, rows: Sequence[tuple[str, ...]]) -> None:
         self.beginResetModel()
         self._rows = rows
         self.endResetModel()
 
     @property
-    def rows(self) -> list[tuple[str, ...]]:
+    def rows(self) -> Sequence[tuple[str, ...]]:
         return self._rows
 
     @property
@@ -104,9 +104,7 @@ class TextTableView(QTableView):
     def __init__(self, model: TextTable, name: str, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.texts = model
-        proxy = QSortFilterProxyModel(self)
-        proxy.setSourceModel(model)
-        self.setModel(proxy)
+        self.setModel(model)
         self.setAccessibleName(name)
         self.verticalHeader().hide()
         self.verticalHeader().setDefaultSectionSize(self.fontMetrics().height() + 8)
@@ -156,14 +154,12 @@ class BelowView(QTabWidget):
         self.summary = QLabel()
         self.summary.setWordWrap(True)
         self.summary.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
-        self._values_for: object = None
         self.addTab(self.state, "Redox and energy state")
         self.addTab(self._reading_page(), "What was read")
         self.addTab(self.values, "Values as used")
         reviewing.opened.connect(self._show_new)
         reviewing.reviewed.connect(self._show_state)
         reviewing.specimen_changed.connect(self._show_state)
-        self.currentChanged.connect(lambda _: self._fill_values())
 
     def _reading_page(self) -> QWidget:
         page = QWidget()
@@ -187,14 +183,7 @@ class BelowView(QTabWidget):
         problems = problem_rows(review.panel)
         self.problems.texts.show(problems)
         self.setTabText(1, f"What was read ({len(problems)} remarks)" if problems else "What was read")
-        self._fill_values()
-
-    def _fill_values(self) -> None:
-        """The values are listed when they are first looked at: a cohort has very many."""
-        review = self._reviewing.review
-        if self.currentWidget() is self.values and review is not None and self._values_for is not review.panel:
-            self._values_for = review.panel
-            self.values.texts.show(value_rows(review.panel))
+        self.values.texts.show(ValueRows(review.panel))
 
     def _show_state(self) -> None:
         review = self._reviewing.review

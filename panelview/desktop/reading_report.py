@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+from typing import overload
+
 import numpy as np
 
 from panelview.intake.panel import Panel, State
@@ -56,26 +59,41 @@ def _counted(count: int, what: str) -> str:
     return f"1 {what}" if count == 1 else f"{count} {what}s"
 
 
-def value_rows(panel: Panel) -> list[tuple[str, ...]]:
-    """One row a value, in file order: as written, as understood, as used."""
-    r = panel.readings
-    rows: list[tuple[str, ...]] = []
-    for k in range(len(r)):
-        used = concentration(float(r.mol_per_l[k]))
+class ValueRows(Sequence[tuple[str, ...]]):
+    """One row a value, in file order: as written, as understood, as used. Made when looked at: a cohort has
+    very many."""
+
+    def __init__(self, panel: Panel) -> None:
+        self._panel = panel
+
+    def __len__(self) -> int:
+        return len(self._panel.readings)
+
+    @overload
+    def __getitem__(self, k: int) -> tuple[str, ...]: ...
+
+    @overload
+    def __getitem__(self, k: slice) -> list[tuple[str, ...]]: ...
+
+    def __getitem__(self, k: int | slice) -> tuple[str, ...] | list[tuple[str, ...]]:
+        if isinstance(k, slice):
+            return [self._row(j) for j in range(*k.indices(len(self)))]
+        return self._row(k)
+
+    def _row(self, k: int) -> tuple[str, ...]:
+        r = self._panel.readings
         state = State(int(r.state[k]))
+        used = concentration(float(r.mol_per_l[k]))
         sign = {State.BELOW_LOQ: "< ", State.ABOVE_RANGE: "> "}.get(state, "")
         sd = relative(float(r.sd_ln[k])) + (" (default)" if r.sd_is_default[k] else "")
-        rows.append(
-            (
-                str(r.row[k]),
-                panel.specimens[r.specimen[k]].code,
-                str(r.name[k]),
-                f"{r.value[k]} {r.unit[k]} {r.flag[k]}".strip(),
-                shown_id(str(r.analyte[k])),
-                f"{sign}{used}" if used else "",
-                sd if used else "",
-                shown_id(state.word),
-                str(r.note[k]),
-            )
+        return (
+            str(r.row[k]),
+            self._panel.specimens[r.specimen[k]].code,
+            str(r.name[k]),
+            f"{r.value[k]} {r.unit[k]} {r.flag[k]}".strip(),
+            shown_id(str(r.analyte[k])),
+            f"{sign}{used}" if used else "",
+            sd if used else "",
+            shown_id(state.word),
+            str(r.note[k]),
         )
-    return rows

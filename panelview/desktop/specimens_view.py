@@ -5,6 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from typing import Any
 
+import numpy as np
+from numpy.typing import NDArray
 from PySide6.QtCore import (
     QAbstractListModel,
     QModelIndex,
@@ -27,8 +29,8 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from panelview.assess.calls import Assessability
 from panelview.assess.review import Review
-from panelview.desktop.arrangement import unread_count
 from panelview.desktop.palette import Colours
 from panelview.desktop.reviewing import Reviewing
 
@@ -71,7 +73,12 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     controls = set(review.reference.specimens)
     wanted = text.casefold().strip()
     others = [s for i, s in enumerate(review.specimens) if i not in controls]
-    telling = _Telling(len({s.group for s in others}) > 1, len({s.matrix for s in others}) > 1)
+    telling = _Telling(
+        group=len({s.group for s in others}) > 1,
+        matrix=len({s.matrix for s in others}) > 1,
+        off=review.findings.highlighted.sum(axis=1),
+        read=(review.findings.assessability <= Assessability.PROXY).sum(axis=1),
+    )
     of_participant: dict[str, list[Entry]] = {}
     of_controls: list[Entry] = []
     for i, facts in enumerate(review.specimens):
@@ -96,12 +103,14 @@ def entries_of(review: Review, text: str = "") -> list[Entry]:
     return made
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class _Telling:
-    """Which facts differ between the specimens, and so are worth a word in the list."""
+    """Which facts differ between the specimens, and so are worth a word; off, read: steps of each specimen."""
 
     group: bool
     matrix: bool
+    off: NDArray[np.int_]
+    read: NDArray[np.int_]
 
 
 def _entry(review: Review, specimen: int, is_control: bool, telling: _Telling) -> Entry:
@@ -114,8 +123,8 @@ def _entry(review: Review, specimen: int, is_control: bool, telling: _Telling) -
         text=facts.code,
         specimen=specimen,
         detail=" · ".join(w for w in words if w),
-        off=int(review.findings.highlighted[specimen].sum()),
-        read=len(review.columns) - unread_count(review, specimen),
+        off=int(telling.off[specimen]),
+        read=int(telling.read[specimen]),
         is_control=is_control,
     )
 
