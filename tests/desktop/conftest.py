@@ -46,16 +46,12 @@ def catalogue() -> Catalogue:
     return load_catalogue()
 
 
-def panel_of(
-    specimens: Mapping[str, tuple[str, Mapping[str, float | str]]], matrix: str = "erythrocyte"
-) -> Panel:
+def panel_of(specimens: Mapping[str, tuple[str, Mapping[str, float | str]]], matrix: str = "erythrocyte") -> Panel:
     """A panel from code → (group, analyte → mmol/L or "<limit")."""
     facts, rows = [], []
     for index, (code, (group, values)) in enumerate(specimens.items()):
         participant = code.split("-")[0]
-        facts.append(
-            SpecimenFacts(code, participant, group, matrix, "", None, None, None, None, "made.csv", index + 2)
-        )
+        facts.append(SpecimenFacts(code, participant, group, matrix, "", None, None, None, None, "made.csv", index + 2))
         rows += [(index, analyte, value) for analyte, value in values.items()]
     n = len(rows)
     is_below = np.array([isinstance(v, str) for _, _, v in rows])
@@ -123,9 +119,7 @@ def few_controls(catalogue: Catalogue) -> Review:
 @pytest.fixture(scope="session")
 def no_controls(catalogue: Catalogue) -> Review:
     """One specimen and no reference at all."""
-    return assess(
-        panel_of({"P1": ("patient", HELD_BACK)}), catalogue, Settings(reference=ReferenceChoice("none"))
-    )
+    return assess(panel_of({"P1": ("patient", HELD_BACK)}), catalogue, Settings(reference=ReferenceChoice("none")))
 
 
 @pytest.fixture

@@ -14,9 +14,7 @@ def run_and_wait(qtbot, task):
     calls = []
 
     def told(name):
-        return lambda *arguments: calls.append(
-            (name, arguments, threading.current_thread() is threading.main_thread())
-        )
+        return lambda *arguments: calls.append((name, arguments, threading.current_thread() is threading.main_thread()))
 
     token = work.run(task, told("done"), told("failed"), told("progress"), told("cancelled"))
     qtbot.waitUntil(lambda: any(name != "progress" for name, _, _ in calls))

@@ -95,6 +95,10 @@ class TestReview:
         assert pages == ["A.pdf", "B.pdf", "C.pdf", "cohort.pdf"]
         assert all((shell.folder / "out" / p).read_bytes().startswith(b"%PDF") for p in pages)
 
+    def test_one_specimen_is_one_specimen(self, shell):
+        shell.review(shell.file("panel.csv", LONG + "A,plasma,lactate,1.2,mmol/L\n"))
+        assert shell.out.startswith("1 specimen reviewed, 0 steps highlighted; written to ")
+
     def test_quiet_says_nothing(self, shell):
         assert shell.review(shell.file("panel.csv", GOOD), "--quiet") == DONE
         assert (shell.out, shell.err) == ("", "")

@@ -6,7 +6,6 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from panelview.intake.read import read_panels
 from pypdf import PdfReader
 from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
 from PySide6.QtGui import QDropEvent
@@ -17,6 +16,7 @@ from panelview.assess.review import ORIGIN_DEFAULT, ORIGIN_FILE, ORIGIN_REVIEWER
 from panelview.assess.settings import ConditionChoice, Settings
 from panelview.catalogue.load import load_catalogue
 from panelview.desktop.cells import Cell
+from panelview.intake.read import read_panels
 from panelview.output.text import CAUTION
 
 
@@ -24,9 +24,7 @@ def first_with_steps_off(window) -> int:
     """The first specimen, not a control, with a step that is off."""
     review = window.reviewing.review
     controls = set(review.reference.specimens)
-    return next(
-        i for i in range(len(review.specimens)) if i not in controls and review.findings.highlighted[i].any()
-    )
+    return next(i for i in range(len(review.specimens)) if i not in controls and review.findings.highlighted[i].any())
 
 
 def click_specimen(qtbot, window, specimen: int) -> None:
@@ -119,9 +117,7 @@ def test_several_quick_changes_end_with_the_last(qtbot, opened):
     for _ in range(7):
         field.stepUp()
     wanted = field.value()
-    qtbot.waitUntil(
-        lambda: abs(opened.reviewing.review.conditions.ph[opened.reviewing.specimen] - wanted) < 1e-9
-    )
+    qtbot.waitUntil(lambda: abs(opened.reviewing.review.conditions.ph[opened.reviewing.specimen] - wanted) < 1e-9)
     assert field.value() == pytest.approx(wanted)
 
 
@@ -161,12 +157,10 @@ def test_the_whole_review_by_keyboard_alone(qtbot, window, red_cells, monkeypatc
 
     qtbot.keyClick(table, Qt.Key.Key_F, Qt.KeyboardModifier.ControlModifier)
     qtbot.keyClicks(QApplication.focusWidget(), "2.7.1.40")
-    assert [
-        window.reviewing.review.columns[c].step.id for c in window.steps.model.rows if isinstance(c, int)
-    ] == ["pyruvate_kinase"]
-    qtbot.keyClick(
-        window, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier
-    )
+    assert [window.reviewing.review.columns[c].step.id for c in window.steps.model.rows if isinstance(c, int)] == [
+        "pyruvate_kinase"
+    ]
+    qtbot.keyClick(window, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier)
     assert CAUTION in QApplication.clipboard().text()
 
     seen = set()
@@ -272,9 +266,7 @@ def test_the_window_asks_for_a_matrix_that_the_file_does_not_state(qtbot, window
     from panelview.desktop.matrix_dialog import MatrixDialog
 
     path = tmp_path / "unstated.csv"
-    path.write_text(
-        "specimen,analyte,value,unit\nS1,lactate,2.1,mmol/L\nS1,pyruvate,0.06,mmol/L\n", encoding="utf-8"
-    )
+    path.write_text("specimen,analyte,value,unit\nS1,lactate,2.1,mmol/L\nS1,pyruvate,0.06,mmol/L\n", encoding="utf-8")
     with qtbot.waitSignal(window.reviewing.matrix_wanted):
         window.desk.open([path])
     dialog = window.findChild(MatrixDialog)
@@ -290,9 +282,7 @@ def test_a_matrix_left_open_is_said_to_be_not_stated(qtbot, window, tmp_path):
     from panelview.desktop.matrix_dialog import MatrixDialog
 
     path = tmp_path / "unstated.csv"
-    path.write_text(
-        "specimen,analyte,value,unit\nS1,lactate,2.1,mmol/L\nS1,pyruvate,0.06,mmol/L\n", encoding="utf-8"
-    )
+    path.write_text("specimen,analyte,value,unit\nS1,lactate,2.1,mmol/L\nS1,pyruvate,0.06,mmol/L\n", encoding="utf-8")
     with qtbot.waitSignal(window.reviewing.matrix_wanted):
         window.desk.open([path])
     with qtbot.waitSignal(window.reviewing.opened):
@@ -354,3 +344,92 @@ def test_several_files_open_as_one_panel(qtbot, window, tmp_path):
     with qtbot.waitSignal(window.reviewing.opened):
         window.desk.open(paths)
     assert [s.code for s in window.reviewing.review.specimens] == ["S1", "S2"]
+
+
+def test_every_part_of_the_window_has_a_name_for_screen_readers(opened):
+    """Tables, lists, fields and buttons: none is announced as nothing."""
+    from PySide6.QtWidgets import QAbstractButton, QAbstractItemView, QAbstractSpinBox, QComboBox, QLineEdit
+
+    unnamed = []
+    for kind in (QAbstractItemView, QAbstractSpinBox, QComboBox, QLineEdit, QAbstractButton):
+        for widget in opened.findChildren(kind):
+            inner = isinstance(widget.parent(), (QAbstractSpinBox, QLineEdit, QComboBox, QAbstractItemView))
+            is_internal = inner or widget.objectName().startswith("qt_") or not widget.isVisible()
+            text = widget.text() if isinstance(widget, QAbstractButton) else ""
+            if not is_internal and not (widget.accessibleName() or text):
+                unnamed.append(widget)
+    assert [type(w).__name__ for w in unnamed] == []
+
+
+def test_the_tab_key_goes_through_every_field_and_comes_back(qtbot, opened):
+    start = opened.conditions.fields["ph"].value
+    start.setFocus()
+    seen = []
+    for _ in range(60):
+        qtbot.keyClick(QApplication.focusWidget(), Qt.Key.Key_Tab)
+        if QApplication.focusWidget() is start:
+            break
+        seen.append(QApplication.focusWidget())
+    assert QApplication.focusWidget() is start
+    for widget in (opened.steps.table, opened.specimens.list, opened.evidence.page, opened.below.state):
+        assert widget in seen
+
+
+def test_light_and_dark_are_chosen_from_the_menu(qtbot, opened):
+    opened.actions_["colours_dark"].trigger()
+    dark = opened.grab().toImage().pixelColor(640, 5).lightness()
+    opened.actions_["colours_light"].trigger()
+    assert opened.grab().toImage().pixelColor(640, 5).lightness() > dark + 100
+
+
+def test_a_condition_can_be_changed_for_all_specimens_at_once(qtbot, opened):
+    opened.conditions.scope.setCurrentIndex(1)
+    with qtbot.waitSignal(opened.reviewing.reviewed):
+        type_number(qtbot, opened.conditions.fields["temperature"].value, "25")
+    assert opened.reviewing.review.conditions.temperature == pytest.approx(298.15)
+    assert set(opened.reviewing.review.condition_origin["temperature"]) == {ORIGIN_REVIEWER}
+
+
+def test_the_floor_of_a_highlight_can_be_set(qtbot, opened):
+    before = int(opened.reviewing.review.findings.highlighted.sum())
+    with qtbot.waitSignal(opened.reviewing.reviewed):
+        type_number(qtbot, opened.conditions.floor, "100")
+    assert before > 0
+    assert not opened.reviewing.review.findings.highlighted.any()
+    assert opened.conditions.floor_origin.text() == f"● {ORIGIN_REVIEWER}"
+
+
+def test_closing_a_panel_goes_back_to_the_start(opened):
+    opened.actions_["close"].trigger()
+    assert opened.start.isVisible()
+    assert not opened.actions_["export_page"].isEnabled()
+    assert opened.windowTitle() == "Panelview"
+
+
+def test_what_was_left_out_is_told_and_one_click_away(qtbot, window, tmp_path):
+    path = tmp_path / "faulty.csv"
+    path.write_text(
+        "specimen,matrix,analyte,value,unit\n"
+        "S1,plasma,lactate,2.1,mmol/L\nS1,plasma,pyruvate,-3,mmol/L\nS1,plasma,glucose,5.1,mmol/L\n",
+        encoding="utf-8",
+    )
+    with qtbot.waitSignal(window.reviewing.opened):
+        window.desk.open([path])
+    assert "Left out while reading: 1 value" in window.notice.text.text()
+    qtbot.mouseClick(window.notice.more, Qt.MouseButton.LeftButton)
+    assert window.below.problems.isVisible()
+    (row,) = [r for r in window.below.problems.texts.rows if r[0] == "value left out"]
+    assert row[1] == "3"
+    assert row[5]  # what to do
+
+
+@pytest.mark.parametrize("name", ["keyboard", "method", "about"])
+def test_help_opens_offline_and_holds_the_caution_or_the_keys(opened, name):
+    from panelview.desktop.help_dialogs import HelpDialog
+
+    opened.actions_[name].trigger()
+    (dialog,) = [d for d in opened.findChildren(HelpDialog) if d.isVisible()]
+    text = " ".join(dialog.page.toPlainText().split())
+    assert ("Ctrl+O" if name == "keyboard" else CAUTION) in text
+    assert "$" not in text
+    dialog.reject()
