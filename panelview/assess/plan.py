@@ -141,7 +141,7 @@ class Planner:
             if defines[c]:
                 self._strip_pool(row, defines[c])
             else:
-                self._eliminate_ratios(row, column, by_pool)
+                self._eliminate_ratios(row, column, by_pool, matrix)
                 self._eliminate_adenylates(row, column, by_pool)
             nu[c], combination[c] = row.nu, row.combination
             offset[c], variance[c] = row.offset, row.variance
@@ -179,7 +179,9 @@ class Planner:
         if pool == "amp_cytosol":
             row.nu[:] = 0.0  # both adenylates are inferred; no measured pair is left
 
-    def _eliminate_ratios(self, row: _Row, column: StepColumn, by_pool: Mapping[str, PoolUse]) -> None:
+    def _eliminate_ratios(
+        self, row: _Row, column: StepColumn, by_pool: Mapping[str, PoolUse], matrix: str
+    ) -> None:
         for pool, (oxidised, reduced, compartment) in RATIO_POOLS.items():
             if compartment != _side(column.compartment):
                 continue
@@ -199,7 +201,7 @@ class Planner:
                 couple_nu[self._position[oxidised]] = couple_nu[self._position[reduced]] = 0.0
                 self._add(row, use.couple, times, couple_nu)
             else:
-                row.blocked = _unknown_ratio(self._catalogue, pool)
+                row.blocked = _unknown_ratio(self._catalogue, pool, matrix)
 
     def _eliminate_adenylates(self, row: _Row, column: StepColumn, by_pool: Mapping[str, PoolUse]) -> None:
         for pool in ("amp_cytosol", "adp_cytosol"):  # AMP first: it brings in ADP
@@ -235,11 +237,12 @@ class _Row:
         self.rests_on: list[IndicatorCouple] = []
 
 
-def _unknown_ratio(catalogue: Catalogue, pool: str) -> str:
+def _unknown_ratio(catalogue: Catalogue, pool: str, matrix: str) -> str:
+    """Why the ratio is unknown in this matrix, and which pairs measured there would tell it."""
     oxidised, reduced, compartment = RATIO_POOLS[pool]
     pairs = []
     for couple in catalogue.couples:
-        if couple.pool == pool:
+        if couple.pool == pool and _usable_in(catalogue, couple, matrix):
             needed = " and ".join(catalogue.metabolites[i].symbol for i in couple_analytes(catalogue, couple))
             pairs.append(needed)
     ask = (

@@ -56,7 +56,8 @@ class Findings:
     that difference among healthy specimens; shift_lower, shift_upper: where the shift can lie when a
     value is censored (±inf on the open side, NaN otherwise; shift is then NaN); p_value, q_value;
     highlighted; censored: rests on a value beyond a limit of quantification; inferred: rests on an
-    inferred free pool; defines_pool: the column's couple defines a free pool and is not judged by it (its shift is that of the couple).
+    inferred free pool; defines_pool: the column's couple defines a free pool and is not judged by it
+    (its shift is that of the couple).
     """
 
     assessability: Codes

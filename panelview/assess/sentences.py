@@ -70,7 +70,9 @@ def sentence(review: Review, specimen: int, column: int, moved: tuple[Driver, ..
     level = Assessability(int(f.assessability[specimen, column]))
     reason = review.reason(specimen, column)
     if level in (Assessability.NOT_ASSESSABLE, Assessability.MISSING):
-        return f"{call_words(review, specimen, column).capitalize()}: {reason.rstrip('.')}."
+        call = call_words(review, specimen, column)
+        told = reason.removeprefix(f"{call}: ").rstrip(".")
+        return f"{call.capitalize()}: {told}."
     parts = [_shift_sentence(review, specimen, column, moved), _position_sentence(review, specimen, column)]
     if level == Assessability.PROXY:
         parts.append(f"Read as a proxy: {reason.rstrip('.')}.")

@@ -131,6 +131,18 @@ def test_an_unknown_ratio_blocks_the_step_and_says_what_would_help(catalogue):
     reason = review.reason(*where)
     assert "free NAD⁺/NADH of the cytosol is not known" in reason
     assert "set by the reviewer" in reason
+    assert "would be known from Pyr and Lac" in reason
+
+
+def test_only_pairs_that_the_matrix_can_be_read_by_are_asked_for(catalogue):
+    """Isocitrate dehydrogenase reports liver's NADP⁺/NADPH; in red cells only 6-phosphogluconate does."""
+    values = RED_CELL | {"glutathione_reduced": 3.0, "glutathione_disulfide": 0.006}
+    red_cell = reviewed(catalogue, values)
+    reason = red_cell.reason(*at(red_cell, "X", "glutathione_reductase"))
+    assert "6PG" in reason
+    assert "iCit" not in reason
+    liver = reviewed(catalogue, values, "liver")
+    assert "iCit" in liver.reason(*at(liver, "X", "glutathione_reductase"))
 
 
 def test_free_adp_comes_from_creatine_kinase_at_the_specimens_own_ph(catalogue):
