@@ -235,10 +235,15 @@ def _review(parsed: argparse.Namespace) -> int:
     if not parsed.quiet:
         off = int(review.findings.highlighted.sum())
         print(
-            f"{len(review.specimens)} specimens reviewed, {off} steps highlighted; written to {parsed.out}\n"
+            f"{_counted(len(review.specimens), 'specimen')} reviewed, {_counted(off, 'step')} highlighted; "
+            f"written to {parsed.out}\n"
             f"{arguments.CAUTION}"
         )
     return PARTLY_REFUSED if panel.refused_specimens else DONE
+
+
+def _counted(number: int, noun: str) -> str:
+    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"
 
 
 def _report_time() -> datetime:
