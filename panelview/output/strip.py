@@ -72,7 +72,7 @@ def strip_words(review: Review, specimen: int, column: int, axis: Axis) -> str:
     if strip.reason:
         return f"{call_words(review, specimen, column)}: {strip.reason}."
     what = "Shift against controls" if axis is Axis.SHIFT else "ΔG′"
-    parts = [_value_words(what, strip)]
+    parts = [_value_words(what, strip, axis)]
     if math.isfinite(strip.band[0]):
         parts.append(f"reference interval {signed(strip.band[0])} to {signed(strip.band[1])}")
     elif math.isfinite(strip.spread[0]):
@@ -88,10 +88,13 @@ def strip_words(review: Review, specimen: int, column: int, axis: Axis) -> str:
     return "; ".join(parts + kinds) + "."
 
 
-def _value_words(what: str, strip: Strip) -> str:
+def _value_words(what: str, strip: Strip, axis: Axis) -> str:
     if math.isfinite(strip.value):
-        limits = f"{signed(strip.lower)} to {signed(strip.upper)}"
-        return f"{what} {signed(strip.value)} kJ/mol, 95 % interval {limits}"
+        told = f"{what} {signed(strip.value)} kJ/mol"
+        if axis is Axis.SHIFT:  # the bar is what healthy specimens differ by, not an error of this shift
+            half = strip.upper - strip.value
+            return f"{told}, 95 % of healthy specimens differ by less than {half:.1f}" if half > 0 else told
+        return f"{told}, 95 % interval {signed(strip.lower)} to {signed(strip.upper)}"
     if math.isfinite(strip.upper):
         return f"{what} at most {signed(strip.upper)} kJ/mol"
     return f"{what} at least {signed(strip.lower)} kJ/mol"
