@@ -54,6 +54,7 @@ def _write(python: Path, panel: Path, out: Path) -> int:
         pages = sorted(path.name for path in out.glob("*.pdf"))
         tables = sorted(path.name for path in out.iterdir() if path.suffix != ".pdf")
         print(f"Written to {out.resolve()}: {len(pages)} PDF files; {', '.join(tables)}")
+        print(f"The program's own command: {python.with_stem('panelview')} --help")
     return status
 
 
