@@ -264,6 +264,12 @@ def _progress(quiet: bool) -> Callable[[int, int, str], None] | None:
 
 
 def _window(parsed: argparse.Namespace) -> int:
+    if _lacks_display():
+        return _say(
+            "panelview: there is no display to open the window on; "
+            "write tables and pages with panelview review FILE --out DIR",
+            FAILED,
+        )
     catalogue = _catalogue(parsed)
     settings = _settings(parsed, catalogue)
     from panelview.desktop.app import run
@@ -274,3 +280,10 @@ def _window(parsed: argparse.Namespace) -> int:
         matrix=parsed.matrix,
         settings=settings,
     )
+
+
+def _lacks_display() -> bool:
+    """Whether Qt would abort the process for want of a display (Linux and its kin only)."""
+    if sys.platform in ("win32", "darwin"):
+        return False
+    return not any(os.environ.get(name) for name in ("DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"))

@@ -509,6 +509,15 @@ def test_a_fault_of_ours_is_told_without_a_traceback(shell, monkeypatch):
     assert "please report it" in shell.err
 
 
+@pytest.mark.skipif(sys.platform in ("win32", "darwin"), reason="these always have a display")
+def test_without_a_display_the_window_is_refused_in_a_sentence(shell, monkeypatch):
+    for name in ("DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"):
+        monkeypatch.delenv(name, raising=False)
+    assert shell.run(sample_data() / "red_cells.csv") == FAILED
+    assert shell.err.startswith("panelview: there is no display")
+    assert "panelview review FILE --out DIR" in shell.err
+
+
 @pytest.mark.parametrize("words", [("--help",), ("review", "--help"), ("constants", "--help"), ("--version",)])
 def test_help_and_version_leave_with_zero(capsys, words):
     with pytest.raises(SystemExit) as left:
