@@ -10,8 +10,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from panelview.catalogue.formula import element_counts
 from panelview.catalogue.constants import StepConstants
+from panelview.catalogue.formula import element_counts
 from panelview.catalogue.load import Catalogue
 from panelview.thermo.conditions import Conditions
 

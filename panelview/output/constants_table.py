@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from panelview.catalogue.load import Catalogue
-from panelview.catalogue.reactions import read_reaction, reaction_constants
+from panelview.catalogue.reactions import reaction_constants, read_reaction
 from panelview.intake.constants_file import AtRow
 from panelview.thermo.conditions import FIELDS, Conditions
 from panelview.thermo.physical import GAS_CONSTANT
