@@ -25,9 +25,7 @@ from environment import (
 
 
 def main() -> int:
-    parser = argparse.ArgumentParser(
-        description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
+    parser = argparse.ArgumentParser(description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter)
     parser.add_argument("folder", type=Path, nargs="?", default=ROOT / "panelview-wheels")
     folder = parser.parse_args().folder
     python = prepare()

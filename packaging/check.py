@@ -26,9 +26,7 @@ _CHECKS = {
 
 
 def main() -> int:
-    parser = argparse.ArgumentParser(
-        description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
+    parser = argparse.ArgumentParser(description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter)
     parser.add_argument("--offline", type=Path, metavar="DIR", help="install from this folder of wheels")
     wanted = parser.parse_args()
     python = prepare(with_tests=True, offline=wanted.offline)

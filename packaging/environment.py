@@ -130,9 +130,7 @@ def _make_folder() -> None:
     """An empty environment with pip; a half-made or outdated one of ours is replaced."""
     if FOLDER.exists() and any(FOLDER.iterdir()):
         if not _MARK.exists():
-            raise CannotPrepare(
-                f"{FOLDER} was not made by this program; move it away or remove it, then start again"
-            )
+            raise CannotPrepare(f"{FOLDER} was not made by this program; move it away or remove it, then start again")
         print("The environment in .venv is incomplete or outdated: making it anew.", flush=True)
         shutil.rmtree(FOLDER)
     _need_ensurepip()
@@ -188,10 +186,7 @@ def _install(what: str, arguments: list[str]) -> None:
 def _reason(output: str, what: str) -> str:
     """Why pip failed, in a sentence that says what to do."""
     if any(sign in output for sign in _NO_ROOM):
-        return (
-            f"the disk is full while installing {what}; about 1 GB is needed in {ROOT} and in the "
-            "temporary folder"
-        )
+        return f"the disk is full while installing {what}; about 1 GB is needed in {ROOT} and in the temporary folder"
     if any(sign in output for sign in _NO_NETWORK):
         return (
             f"{what} could not be fetched: the package index does not answer. Connect to the network (or set "

@@ -21,9 +21,7 @@ SAMPLE = ROOT / "sample_data" / "red_cells.csv"
 
 
 def main() -> int:
-    parser = argparse.ArgumentParser(
-        description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
+    parser = argparse.ArgumentParser(description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter)
     parser.add_argument("panel", type=Path, nargs="?", default=SAMPLE, help="a panel file (CSV)")
     parser.add_argument("--no-window", action="store_true", help="write pages and tables instead")
     parser.add_argument("--out", type=Path, metavar="DIR", help="where to write them (means --no-window)")
@@ -59,9 +57,7 @@ def _write(python: Path, panel: Path, out: Path) -> int:
 
 
 def _run(python: Path, arguments: list[str]) -> int:
-    return subprocess.run(
-        [str(python), "-m", "panelview", *arguments], check=False, env=child_environment()
-    ).returncode
+    return subprocess.run([str(python), "-m", "panelview", *arguments], check=False, env=child_environment()).returncode
 
 
 if __name__ == "__main__":
