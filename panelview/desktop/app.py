@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -17,6 +18,9 @@ from panelview.desktop.window import MainWindow, theme_of
 if TYPE_CHECKING:
     from panelview.assess.settings import Settings
     from panelview.intake.problems import InputRefused
+
+#: From then on memory is collected as usual, ms.
+_STARTED_AFTER = 3000
 
 #: Exit statuses of the contract: done, a fault of ours, input refused.
 _DONE, _FAILED, _REFUSED = 0, 1, 3
@@ -35,6 +39,8 @@ def run(
     """
     from panelview.assess.settings import Settings
 
+    # Nothing made before the first review becomes garbage, but the collector would look for it some dozen times.
+    gc.disable()
     application = make_application()
     store = QSettings()
     window = MainWindow(settings or Settings(), theme_of(application, store), store)
@@ -44,6 +50,7 @@ def run(
         _leave_when_painted(window, argv_file is not None)
     if argv_file is not None:
         window.reviewing.open([argv_file], matrix)
+    QTimer.singleShot(_STARTED_AFTER, window, gc.enable)
     return application.exec()
 
 

@@ -22,7 +22,6 @@ from PySide6.QtWidgets import (
     QLabel,
     QLineEdit,
     QListView,
-    QStyle,
     QStyledItemDelegate,
     QStyleOptionViewItem,
     QVBoxLayout,
@@ -196,7 +195,7 @@ class SpecimenDelegate(QStyledItemDelegate):
         if entry.specimen < 0:
             self._paint_heading(painter, option, entry)
         else:
-            self._paint_specimen(painter, option, entry)
+            self._paint_specimen(painter, option, index)
         painter.restore()
 
     def _paint_heading(self, painter: QPainter, option: QStyleOptionViewItem, entry: Entry) -> None:
@@ -209,15 +208,16 @@ class SpecimenDelegate(QStyledItemDelegate):
         text = QFontMetrics(font).elidedText(entry.text, Qt.TextElideMode.ElideRight, area.width())
         painter.drawText(area, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignBottom, text)
 
-    def _paint_specimen(self, painter: QPainter, option: QStyleOptionViewItem, entry: Entry) -> None:
+    def _paint_specimen(self, painter: QPainter, option: QStyleOptionViewItem, index: Index) -> None:
         assert self.colours is not None
+        entry: Entry = index.data(ENTRY_ROLE)
         rect = option.rect
-        chosen = bool(option.state & QStyle.StateFlag.State_Selected)
-        if chosen:
+        view = self.parent()
+        assert isinstance(view, QListView)
+        if view.selectionModel().isRowSelected(index.row()):
             painter.fillRect(rect, self.colours.colour("selection"))
             painter.fillRect(QRect(rect.left(), rect.top(), 3, rect.height()), self.colours.colour("accent"))
-            view = self.parent()
-            if isinstance(view, QListView) and view.hasFocus():
+            if view.hasFocus():
                 painter.setPen(QPen(self.colours.colour("accent"), 1))
                 painter.drawRect(rect.adjusted(0, 0, -1, -1))
         left = rect.left() + (18 if entry.indented else 8)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from PySide6.QtCore import QModelIndex, QPersistentModelIndex, QRect, QRectF, QSize, Qt
 from PySide6.QtGui import QFontMetrics, QPainter, QPen
-from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem, QTableView, QWidget
+from PySide6.QtWidgets import QStyledItemDelegate, QStyleOptionViewItem, QTableView, QWidget
 
 from panelview.desktop.arrangement import Heading
 from panelview.desktop.cells import NUMBERS, Cell
@@ -65,12 +65,13 @@ class StripDelegate(QStyledItemDelegate):
     ) -> None:
         """The row's ground, its rule, and a bar at the left of the chosen row."""
         assert self.colours is not None
-        chosen = bool(option.state & QStyle.StateFlag.State_Selected)
+        view = self.parent()
+        assert isinstance(view, QTableView)
+        chosen = view.selectionModel().isRowSelected(index.row())
         painter.fillRect(option.rect, self.colours.colour("selection" if chosen else "base"))
         painter.setPen(QPen(self.colours.colour("faint_line"), 1))
         painter.drawLine(option.rect.bottomLeft(), option.rect.bottomRight())
-        view = self.parent()
-        if chosen and isinstance(view, QTableView) and view.hasFocus():
+        if chosen and view.hasFocus():
             painter.setPen(QPen(self.colours.colour("accent"), 1))
             painter.drawLine(option.rect.topLeft(), option.rect.topRight())
             painter.drawLine(option.rect.bottomLeft(), option.rect.bottomRight())
