@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import repeat
+
 import numpy as np
 
 from panelview.assess.review import Concentrations
@@ -29,7 +31,7 @@ def concentrations(panel: Panel, analytes: tuple[str, ...]) -> Concentrations:
     shape = (len(panel.specimens), len(analytes))
     readings = panel.readings
     position = {analyte: k for k, analyte in enumerate(analytes)}
-    column = np.fromiter((position.get(a, -1) for a in readings.analyte), dtype=np.intp, count=len(readings))
+    column = np.fromiter(map(position.get, readings.analyte, repeat(-1)), dtype=np.intp, count=len(readings))
     usable = (
         (column >= 0)
         & np.isin(readings.state, (State.MEASURED, State.BELOW_LOQ, State.ABOVE_RANGE))
@@ -49,7 +51,7 @@ def concentrations(panel: Panel, analytes: tuple[str, ...]) -> Concentrations:
     ln_c[at] = np.log(readings.mol_per_l[chosen])
     sd[at] = np.nan_to_num(readings.sd_ln[chosen])
     shared[at] = np.nan_to_num(readings.shared_sd_ln[chosen])
-    basis[at] = [code.get(b, 0) for b in readings.basis[chosen]]
+    basis[at] = np.fromiter(map(code.get, readings.basis[chosen], repeat(0)), dtype=np.int8, count=len(chosen))
     below[at] = readings.state[chosen] == State.BELOW_LOQ
     above[at] = readings.state[chosen] == State.ABOVE_RANGE
     reading[at] = chosen

@@ -35,17 +35,29 @@ def resolve_conditions(
     default of the matrix. Where only a value is given, the uncertainty stays the matrix's.
     Raises OutOfModelRange.
     """
-    values = {name: np.empty(len(specimens)) for field in FIELDS for name in (field, f"{field}_sd")}
-    origins: dict[str, list[str]] = {field: [] for field in FIELDS}
+    numbers = np.empty((2 * len(FIELDS), len(specimens)))
+    origins: list[tuple[str, ...]] = []
+    # Most specimens of a study share everything that matters here, so each distinct case is resolved once.
+    resolved: dict[tuple[object, ...], tuple[list[float], tuple[str, ...]]] = {}
     for i, facts in enumerate(specimens):
-        own = settings.specimen_conditions.get(facts.code, {})
-        for field in FIELDS:
-            choices = [own.get(field), settings.conditions.get(field)]
-            value, sd, origin = _one(field, facts, matrices.get(facts.matrix), choices)
-            values[field][i] = value
-            values[f"{field}_sd"][i] = sd
-            origins[field].append(origin)
-    return Conditions.of(**values), {field: tuple(words) for field, words in origins.items()}
+        own = settings.specimen_conditions.get(facts.code)
+        key = (facts.matrix, facts.ph, facts.temperature, facts.ionic_strength, facts.pmg, facts.code if own else "")
+        if key not in resolved:
+            resolved[key] = _resolve(facts, matrices.get(facts.matrix), own or {}, settings)
+        numbers[:, i], origin = resolved[key]
+        origins.append(origin)
+    names = [*FIELDS, *(f"{field}_sd" for field in FIELDS)]
+    words = zip(*origins, strict=True) if origins else ((),) * len(FIELDS)
+    return Conditions.of(**dict(zip(names, numbers, strict=True))), dict(zip(FIELDS, words, strict=True))
+
+
+def _resolve(
+    facts: SpecimenFacts, matrix: Matrix | None, own: Mapping[str, ConditionChoice], settings: Settings
+) -> tuple[list[float], tuple[str, ...]]:
+    """Values, then standard uncertainties of all conditions of one specimen, and the values' origins."""
+    found = [_one(field, facts, matrix, [own.get(field), settings.conditions.get(field)]) for field in FIELDS]
+    values, spreads, origins = zip(*found, strict=True)
+    return [*values, *spreads], origins
 
 
 def _one(
