@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from panelview.catalogue.formula import element_counts, molar_mass
+from panelview.catalogue.levels import LevelPrior
 from panelview.catalogue.metabolites import KnownAnalyte, Metabolite, Name
 from panelview.catalogue.rows import Row, read_table, unique
 from panelview.thermo.species import SpeciesTable
@@ -166,17 +167,30 @@ def _neutral_hydrogen(metabolite: Metabolite) -> int:
     return hydrogen - _COA_BODY_HYDROGEN if metabolite.count_convention == "reduced CoA" else hydrogen
 
 
+_LEVEL_COLUMNS = ("reactant", "shift_kj_per_mol", "sd_kj_per_mol", "prior_sd_kj_per_mol", "source", "note")
+
+
+def read_level_priors(folder: Path) -> tuple[LevelPrior, ...]:
+    """levels.csv as the reconciliation needs it: the width that each level was given before any measurement."""
+    made = []
+    for row in read_table(folder, "levels.csv", _LEVEL_COLUMNS):
+        prior = row.number_or_nan("prior_sd_kj_per_mol", 0, 50)
+        evidence = row.text("note").removeprefix("evidence:").split(";")
+        made.append(
+            LevelPrior(
+                reactant=row.required("reactant"),
+                shift=row.number_in("shift_kj_per_mol", -50, 50),
+                sd=row.number_in("sd_kj_per_mol", 0, 50),
+                prior_sd=None if math.isnan(prior) else prior,
+                only_auxiliary=all(e.strip().startswith("auxiliary") for e in evidence),
+            )
+        )
+    return tuple(made)
+
+
 def read_levels(folder: Path, reactants: tuple[str, ...]) -> tuple[Array, Array]:
     """levels.csv: correction of each reactant's ΔfG° and its standard uncertainty, kJ/mol, [reactant]."""
-    columns = (
-        "reactant",
-        "shift_kj_per_mol",
-        "sd_kj_per_mol",
-        "prior_sd_kj_per_mol",
-        "source",
-        "note",
-    )
-    rows = read_table(folder, "levels.csv", columns)
+    rows = read_table(folder, "levels.csv", _LEVEL_COLUMNS)
     unique(rows, ("reactant",))
     position = {reactant: k for k, reactant in enumerate(reactants)}
     level = np.zeros(len(reactants))

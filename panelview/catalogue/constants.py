@@ -146,7 +146,8 @@ class ConstantSet:
         temperature = conditions.temperature[:, None]
         rt = GAS_CONSTANT * temperature
         table_t = self._table_ln_k(conditions)
-        table_flat = self._table_ln_k(conditions.replace(temperature=TABLE_TEMPERATURE))
+        at_table = replace(conditions, temperature=np.full_like(conditions.temperature, TABLE_TEMPERATURE))
+        table_flat = self._table_ln_k(at_table)
         vant_hoff = -anchor.enthalpy / GAS_CONSTANT * (1 / temperature - 1 / anchor.temperature)
         ln_k = anchor.ln_k_prime + np.where(
             anchor.uses_species_enthalpy,
