@@ -11,6 +11,7 @@ from __future__ import annotations
 import argparse
 import sys
 from collections import defaultdict
+from collections.abc import Sequence
 from pathlib import Path
 
 ROOT = Path(__file__).resolve().parent.parent
@@ -99,7 +100,7 @@ def _steps(catalogue: Catalogue, full: reconcile.Fit) -> list[str]:
     return [title, "", *_table(("step", "constants.csv", "network", "difference"), rows)]
 
 
-def _table(heading: tuple[str, ...], rows: list[tuple[str, ...]]) -> list[str]:
+def _table(heading: tuple[str, ...], rows: Sequence[tuple[str, ...]]) -> list[str]:
     made = [f"| {' | '.join(heading)} |", "|" + "---|" * len(heading)]
     return made + [f"| {' | '.join(row)} |" for row in rows]
 
