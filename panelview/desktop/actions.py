@@ -72,7 +72,7 @@ SPECS = (
     Spec("next_area", _REVIEW, "Next &area of the window", ("F6",), rule=True),
     Spec("edit_conditions", _REVIEW, "Change &conditions", ("Ctrl+K",), rule=True),
     Spec("free_ratios", _REVIEW, "&Free cofactor ratios …", ("Ctrl+R",)),
-    Spec("reset", _REVIEW, "&Reset conditions, ratios and floor", ("Ctrl+Backspace",)),
+    Spec("reset", _REVIEW, "&Reset all that was changed", ("Ctrl+Backspace",)),
     Spec("what_was_read", _REVIEW, "What was r&ead", ("Ctrl+I",), rule=True),
     Spec("cancel", _REVIEW, "&Stop what is running", ("Esc",), needs_review=False),
     Spec("keyboard", _HELP, "&Keyboard", ("F1",), needs_review=False),

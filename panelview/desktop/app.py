@@ -8,18 +8,20 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QCoreApplication, QSettings, Qt, QTimer
+from PySide6.QtGui import QIcon
 from PySide6.QtWidgets import QApplication
 
 from panelview.desktop import faults
 from panelview.desktop.fonts import register_fonts
 from panelview.desktop.notices import Severity
 from panelview.desktop.window import MainWindow, theme_of
+from panelview.resource_files import resources
 
 if TYPE_CHECKING:
     from panelview.assess.settings import Settings
     from panelview.intake.problems import InputRefused
 
-#: From then on memory is collected as usual, ms.
+#: What can wait is done then, ms.
 _STARTED_AFTER = 3000
 
 #: Exit statuses of the contract: done, a fault of ours, input refused.
@@ -50,8 +52,14 @@ def run(
         _leave_when_painted(window, argv_file is not None)
     if argv_file is not None:
         window.reviewing.open([argv_file], matrix)
-    QTimer.singleShot(_STARTED_AFTER, window, gc.enable)
+    QTimer.singleShot(_STARTED_AFTER, window, lambda: _after_start(application))
     return application.exec()
+
+
+def _after_start(application: QApplication) -> None:
+    """Collect memory as usual from here on; load the icon, whose format needs a library of its own."""
+    gc.enable()
+    application.setWindowIcon(QIcon(str(resources() / "icons" / "panelview.svg")))
 
 
 def make_application() -> QApplication:

@@ -12,7 +12,7 @@ from PySide6.QtCore import (
     QPersistentModelIndex,
     Qt,
 )
-from PySide6.QtGui import QResizeEvent, QShowEvent
+from PySide6.QtGui import QKeyEvent, QKeySequence, QResizeEvent, QShowEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QLabel,
@@ -23,6 +23,7 @@ from PySide6.QtWidgets import (
 )
 
 from panelview.assess.review import Review, StateRow
+from panelview.desktop.copying import copy_selected_rows
 from panelview.desktop.reading_report import (
     PROBLEM_HEADINGS,
     VALUE_HEADINGS,
@@ -123,6 +124,12 @@ class TextTableView(QTableView):
         super().resizeEvent(event)
         if event.oldSize().width() != event.size().width():
             self._fit()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.matches(QKeySequence.StandardKey.Copy):
+            copy_selected_rows(self)
+            return
+        super().keyPressEvent(event)
 
     def showEvent(self, event: QShowEvent) -> None:
         super().showEvent(event)

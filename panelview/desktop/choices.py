@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import replace
 
 from panelview.assess.review import ORIGIN_REVIEWER
-from panelview.assess.settings import ConditionChoice, FreeRatio, Settings
+from panelview.assess.settings import ConditionChoice, FreeRatio, ReferenceChoice, Settings
 
 
 def with_condition(
@@ -48,6 +48,11 @@ def without_free_ratio(settings: Settings, start: Settings, pool: str) -> Settin
 def with_shift_floor(settings: Settings, floor: float) -> Settings:
     """Smallest shift that is highlighted, kJ/mol."""
     return replace(settings, shift_floor=floor)
+
+
+def with_reference(settings: Settings, reference: ReferenceChoice) -> Settings:
+    """Compare with other controls, with published values or with nothing."""
+    return replace(settings, reference=reference)
 
 
 def is_changed(settings: Settings, start: Settings) -> bool:

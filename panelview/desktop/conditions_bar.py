@@ -165,7 +165,7 @@ class ConditionsBar(QWidget):
         self.scope.setAccessibleName("Which specimens a changed condition applies to")
         self.scope.setToolTip("Which specimens a changed condition applies to")
         self.reset = QPushButton("Reset")
-        self.reset.setToolTip("All conditions, ratios and the floor as they were when the panel was opened")
+        self.reset.setToolTip("Conditions, ratios, floor and reference as they were when the panel was opened")
         self.reset.clicked.connect(self.reset_all)
 
     def _lay_out(self) -> None:

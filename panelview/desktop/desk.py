@@ -13,6 +13,7 @@ from panelview.desktop import work
 from panelview.desktop.arrangement import Order
 from panelview.desktop.notices import Severity
 from panelview.desktop.reading_report import left_out
+from panelview.desktop.reference_menu import ReferenceMenu
 from panelview.desktop.samples import SAMPLES, sample_path
 from panelview.desktop.theme import Choice
 from panelview.output.file_names import safe_name
@@ -39,6 +40,7 @@ class Desk:
         w, actions = self._window, self._window.actions_
         menus = actions.fill(w.menuBar())
         self._add_file_menus(menus["File"])
+        menus["Review"].insertMenu(actions["reset"], ReferenceMenu(w.reviewing, w))
         steps = w.steps
         actions.connect(
             open=self.choose_file,

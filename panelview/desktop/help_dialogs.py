@@ -43,6 +43,7 @@ def keyboard_html() -> str:
     )
     own = (
         ("Lists and tables", "another row", "Up, Down, Page Up, Page Down, Home, End"),
+        ("Tables", "copy the selected rows as text", "Ctrl+C"),
         ("Everywhere", "next, previous field", "Tab, Shift+Tab"),
         ("Number fields", "one step up, down; take what was typed", "Up, Down; Enter"),
         ("Menus", "open a menu by its underlined letter", "Alt and the letter"),

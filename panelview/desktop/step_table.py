@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QModelIndex, Qt, Signal
-from PySide6.QtGui import QFontMetrics, QKeyEvent, QPaintEvent, QPalette, QResizeEvent
+from PySide6.QtGui import QFontMetrics, QKeyEvent, QKeySequence, QPaintEvent, QPalette, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableView, QWidget
 
 from panelview.desktop.arrangement import Heading
 from panelview.desktop.cells import Cell
+from panelview.desktop.copying import copy_selected_rows
 from panelview.desktop.palette import Colours
 from panelview.desktop.step_model import ROW_ROLE, StepModel
 from panelview.desktop.strip_delegate import PADDING, StripDelegate
@@ -101,6 +102,9 @@ class StepTable(QTableView):
         """Left and right scroll nothing here: a row is one thing, so they are left to the window."""
         if event.key() in (Qt.Key.Key_Left, Qt.Key.Key_Right):
             event.ignore()
+            return
+        if event.matches(QKeySequence.StandardKey.Copy):
+            copy_selected_rows(self)
             return
         super().keyPressEvent(event)
 

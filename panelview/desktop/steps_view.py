@@ -17,6 +17,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from panelview.assess.review import ORIGIN_REVIEWER
 from panelview.desktop.arrangement import Arrangement, Order, arranged, pathways, unread_count
 from panelview.desktop.palette import Colours
 from panelview.desktop.reviewing import Reviewing
@@ -192,6 +193,8 @@ class StepsView(QWidget):
         off = int(review.findings.highlighted[specimen].sum())
         said = "no step off" if off == 0 else f"{off} step{'s' if off > 1 else ''} off"
         compared = review.reference.label
+        if self._reviewing.settings.reference != self._reviewing.start.reference:
+            compared += f" ({ORIGIN_REVIEWER})"
         self.heading.setText(f"<b>{facts.code}</b> · {said} of {read} read · compared with {compared}")
         self.heading.setToolTip(f"Compared with: {compared}")
         self.hide_box.setText(f"Hide {unread} not readable")

@@ -433,3 +433,32 @@ def test_help_opens_offline_and_holds_the_caution_or_the_keys(opened, name):
     assert ("Ctrl+O" if name == "keyboard" else CAUTION) in text
     assert "$" not in text
     dialog.reject()
+
+
+def test_specimens_can_be_compared_with_published_values_instead(qtbot, opened):
+    from panelview.desktop.reference_menu import ReferenceMenu
+
+    menu = opened.findChild(ReferenceMenu)
+    action = next(a for a in menu.actions() if a.text() == "Published concentrations")
+    with qtbot.waitSignal(opened.reviewing.reviewed):
+        action.trigger()
+    assert opened.reviewing.review.reference.kind == "published"
+    assert ORIGIN_REVIEWER in opened.steps.heading.text()
+    with qtbot.waitSignal(opened.reviewing.reviewed):
+        opened.actions_["reset"].trigger()
+    assert opened.reviewing.review.reference.kind == "group"
+    assert ORIGIN_REVIEWER not in opened.steps.heading.text()
+
+
+def test_rows_of_any_table_are_copied_with_the_usual_key(qtbot, opened):
+    table = opened.steps.table
+    table.setFocus()
+    qtbot.keyClick(table, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier)
+    row = opened.steps.model.row_of(opened.reviewing.column)
+    assert opened.steps.model.index(row, Cell.CALL).data() in QApplication.clipboard().text()
+    state = opened.below.state
+    state.selectAll()
+    qtbot.keyClick(state, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier)
+    lines = QApplication.clipboard().text().splitlines()
+    assert lines[0].split("\t")[0] == "Quantity"
+    assert len(lines) == 1 + len(state.texts.rows)
