@@ -11,13 +11,9 @@ import panelview
 from panelview.assess.review import ORIGIN_COMMAND
 from panelview.assess.settings import ConditionChoice, FreeRatio
 from panelview.catalogue.couples import RATIO_POOLS
+from panelview.output.text import CAUTION
 from panelview.thermo.conditions import FIELDS, LIMITS, Conditions, OutOfModelRange
 from panelview.thermo.physical import ZERO_CELSIUS
-
-CAUTION = (
-    "Research use only. Not for diagnosis or treatment. "
-    "Licensed clinical judgement and local regulations govern."
-)
 
 #: Subcommands; anything else is a file for the window.
 COMMANDS = ("review", "constants", "inspect")

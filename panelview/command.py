@@ -21,8 +21,10 @@ from panelview.assess.calls import SHIFT_FLOOR
 from panelview.assess.settings import ReferenceChoice, Settings, UnknownReference
 from panelview.catalogue.load import Catalogue, load_catalogue
 from panelview.catalogue.reactions import UnreadableReaction
+from panelview.catalogue.rows import CatalogueError
 from panelview.intake.constants_file import read_at, read_own_constants
 from panelview.intake.problems import InputRefused, Problem, Severity
+from panelview.output.text import CAUTION
 
 DONE = 0
 FAILED = 1
@@ -45,6 +47,8 @@ def main(argv: Sequence[str] | None = None) -> int:
         return _say(f"panelview: {error}", WRONG_USAGE)
     except InputRefused as error:
         return _say(str(error), REFUSED)
+    except CatalogueError as error:
+        return _say(f"panelview: a data file of the program is damaged: {error}; install the program again", FAILED)
     except BrokenPipeError:
         # The reader of our output has left; there is nobody to tell.
         sys.stdout = open(os.devnull, "w")  # noqa: SIM115, PTH123
@@ -237,7 +241,7 @@ def _review(parsed: argparse.Namespace) -> int:
         print(
             f"{_counted(len(review.specimens), 'specimen')} reviewed, {_counted(off, 'step')} highlighted; "
             f"written to {parsed.out}\n"
-            f"{arguments.CAUTION}"
+            f"{CAUTION}"
         )
     return PARTLY_REFUSED if panel.refused_specimens else DONE
 
