@@ -29,6 +29,12 @@ CONTROL_WORDS = frozenset(
 )
 
 
+#: Standard deviation of ln c between laboratories, put on each published value: its own SD is that of one
+#: laboratory's method. Two published red-cell tables (Minakami and Yoshikawa 1965; Beutler 1984) differ by a
+#: factor of two in the median of the analytes they share, an SD of 0.7 each; 0.4 leaves half of that to biology.
+BETWEEN_LABORATORIES_SD = 0.4
+
+
 @dataclass(frozen=True)
 class _Controls:
     """Control specimens of a panel: which, what they hold, their constants."""
@@ -76,9 +82,7 @@ class ReferenceGroup:
             return self._from_published(self.published[plan.matrix], plan, action, rt[:, None], used, rows)
         return no_reference(shape)
 
-    def _from_controls(
-        self, controls: _Controls, plan: Plan, rows: NDArray[np.intp], action: MassAction
-    ) -> Reference:
+    def _from_controls(self, controls: _Controls, plan: Plan, rows: NDArray[np.intp], action: MassAction) -> Reference:
         own = controls.rows[controls.matrices[controls.rows] == plan.matrix]
         if len(own) == 0:
             return no_reference((len(rows), len(action.active)))
@@ -106,7 +110,7 @@ class ReferenceGroup:
         ln_q = np.nan_to_num(published.ln_mean) @ nu.T + plan.offset[action.active]
         mean = action.constant_total + rt * np.where(lacks_mean, np.nan, ln_q)
         # Analytes are taken as independent between subjects: their correlation is not published.
-        variance = np.nan_to_num(published.ln_sd) ** 2 @ (nu**2).T
+        variance = (np.nan_to_num(published.ln_sd) ** 2 + BETWEEN_LABORATORIES_SD**2) @ (nu**2).T
         factor = np.where(np.isnan(used.ln_c[rows]), 0.0, used.shared_sd[rows]) @ nu.T
         sd = rt * np.sqrt(variance + factor**2)
         sd = np.where(lacks_sd | lacks_mean, np.nan, sd)
@@ -216,7 +220,8 @@ def _published(catalogue: Catalogue, analytes: tuple[str, ...], panel: Panel) ->
     return ReferenceGroup(
         used=ReferenceUsed(
             kind="published",
-            label="published concentrations (" + "; ".join(labels) + "), not this laboratory's own controls",
+            label="published concentrations (" + "; ".join(labels) + "), not this laboratory's own controls; "
+            "widened for differences between laboratories",
             specimens=(),
             count=0,
             ln_c={matrix: values.ln_mean for matrix, values in made.items()},

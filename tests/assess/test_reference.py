@@ -105,3 +105,10 @@ def test_the_floor_of_a_highlight_is_the_reviewers(catalogue):
 def test_control_rows_match_the_whole_word(catalogue):
     panel = panel_of([Specimen("A", {}, group="controlled"), Specimen("B", {}, group="control")])
     assert control_rows(panel).tolist() == [1]
+
+
+def test_a_healthy_table_of_another_laboratory_is_not_called_off(catalogue):
+    """The textbook's healthy red cells against another published table: laboratories differ, nothing is displaced."""
+    review = study(catalogue, "batch A")
+    assert review.reference.kind == "published"
+    assert not review.findings.highlighted.any()
