@@ -71,20 +71,26 @@ def prepare(with_tests: bool = False, offline: Path | None = None) -> Path:
             f"{offline} holds no wheels; packaging/bundle_wheels.py fills such a folder, given a network"
         )
     source = [] if offline is None else ["--no-index", "--find-links", str(offline.resolve())]
-    base = _digest(RUN_REQUIREMENTS.read_text(), sys.version, str(ROOT))
+    base = _digest(_text(RUN_REQUIREMENTS), sys.version, str(ROOT))
+    project = _digest(base, _text(ROOT / "pyproject.toml"), _text(ROOT / "panelview" / "__init__.py"))
+    digests = {"run": base, "project": project}
+    if with_tests:
+        digests["test"] = _digest(base, _text(TEST_REQUIREMENTS))
+    if all(_is_done(stage, digest) for stage, digest in digests.items()):
+        # Nothing is written, so whoever may only read the checkout can run what was set up for them.
+        return python()
+    install: dict[str, tuple[str, list[str]]] = {
+        "run": ("the program's packages", [*source, "-r", str(RUN_REQUIREMENTS)]),
+        "project": ("the checkout itself", ["--no-index", "--no-build-isolation", "--editable", str(ROOT)]),
+        "test": ("the packages of the checks", [*source, "-r", str(TEST_REQUIREMENTS)]),
+    }
     with _alone():
         if not _is_done("run", base):
             _make_folder()
-            _install("the program's packages", [*source, "-r", str(RUN_REQUIREMENTS)])
-            _mark_done("run", base)
-        project = _digest(base, (ROOT / "pyproject.toml").read_text(), _version_text())
-        if not _is_done("project", project):
-            _install("the checkout itself", ["--no-index", "--no-build-isolation", "--editable", str(ROOT)])
-            _mark_done("project", project)
-        tests = _digest(base, TEST_REQUIREMENTS.read_text())
-        if with_tests and not _is_done("test", tests):
-            _install("the packages of the checks", [*source, "-r", str(TEST_REQUIREMENTS)])
-            _mark_done("test", tests)
+        for stage, digest in digests.items():
+            if not _is_done(stage, digest):
+                _install(*install[stage])
+                _mark_done(stage, digest)
     return python()
 
 
@@ -113,8 +119,8 @@ def _digest(*parts: str) -> str:
     return hashlib.sha256("\0".join(parts).encode()).hexdigest()
 
 
-def _version_text() -> str:
-    return (ROOT / "panelview" / "__init__.py").read_text(encoding="utf-8")
+def _text(path: Path) -> str:
+    return path.read_text(encoding="utf-8")
 
 
 def _is_done(stage: str, digest: str) -> bool:
@@ -132,17 +138,28 @@ def _make_folder() -> None:
         if not _MARK.exists():
             raise CannotPrepare(f"{FOLDER} was not made by this program; move it away or remove it, then start again")
         print("The environment in .venv is incomplete or outdated: making it anew.", flush=True)
-        shutil.rmtree(FOLDER)
+        try:
+            shutil.rmtree(FOLDER)
+        except OSError as error:
+            raise CannotPrepare(
+                f"{FOLDER} must be made anew but cannot be removed ({error}); "
+                "close every window of the program, then start again"
+            ) from error
     _need_ensurepip()
     FOLDER.mkdir(exist_ok=True)
     _MARK.write_text("packaging/start.py and packaging/check.py made this folder and may replace it.\n")
     with step(f"Making a Python {sys.version_info[0]}.{sys.version_info[1]} environment in {FOLDER}"):
         made = subprocess.run(
-            [sys.executable, "-m", "venv", str(FOLDER)],
+            [_base_python(), "-m", "venv", str(FOLDER)],
             capture_output=True, text=True, check=False, env=child_environment(),
         )  # fmt: skip
     if made.returncode != 0:
         raise CannotPrepare(f"python -m venv failed:\n{(made.stdout + made.stderr).strip()}")
+
+
+def _base_python() -> str:
+    """The interpreter behind this one: who starts with .venv's own must not lose it while it is replaced."""
+    return getattr(sys, "_base_executable", None) or sys.executable
 
 
 def _need_ensurepip() -> None:
@@ -203,7 +220,13 @@ def _alone() -> Iterator[None]:
 
     The lock is the operating system's, so it goes when its holder ends, however it ends.
     """
-    with (ROOT / ".venv.lock").open("w") as lock:
+    try:
+        lock = (ROOT / ".venv.lock").open("w")
+    except OSError as error:
+        raise CannotPrepare(
+            f"{ROOT} cannot be written to ({error.strerror}); copy the program to a folder of your own"
+        ) from error
+    with lock:
         if sys.platform == "win32":
             import msvcrt
 

@@ -54,10 +54,13 @@ def can_open_window(python: Path) -> bool:
 
 def _try(python: Path, code: str) -> str:
     """Run code in the environment; the complaint, empty when it ran."""
-    done = subprocess.run(
-        [str(python), "-c", code], capture_output=True, text=True, errors="replace", check=False,
-        env=child_environment(), timeout=120,
-    )  # fmt: skip
+    try:
+        done = subprocess.run(
+            [str(python), "-c", code], capture_output=True, text=True, errors="replace", check=False,
+            env=child_environment(), timeout=120,
+        )  # fmt: skip
+    except subprocess.TimeoutExpired:
+        return "it did not answer within two minutes"
     return "" if done.returncode == 0 else done.stderr.strip() or f"it ended with status {done.returncode}"
 
 
