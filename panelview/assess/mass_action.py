@@ -203,6 +203,6 @@ def _shared_variance(
     shared = used.shared_sd[np.ix_(rows, touched)]
     basis = used.basis[np.ix_(rows, touched)]
     variance = np.zeros((len(rows), len(nu)))
-    for code in np.unique(basis[shared > 0]):
+    for code in sorted(set(basis[shared > 0].tolist())):
         variance += _rows_product(np.where(basis == code, shared, 0.0), nu) ** 2
     return variance

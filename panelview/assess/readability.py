@@ -125,7 +125,7 @@ class Readability:
         needed = np.flatnonzero(plan.nu[c])
         lacks = missing[:, needed]
         pattern = lacks @ (1 << np.arange(len(needed)))
-        for value in np.unique(pattern):
+        for value in sorted(set(pattern.tolist())):
             if value == 0:
                 continue
             names = [self._symbols[a] for k, a in enumerate(needed) if value >> k & 1]

@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import functools
 import math
-from statistics import NormalDist
 
 import numpy as np
 from numpy.typing import NDArray
@@ -60,7 +59,7 @@ def _one_quantile(p: float, df: float) -> float:
     """Newton's iteration on the two-sided tail in ln t, in which the tail is nearly straight."""
     wanted = math.log(2 * (1 - p))
     freedom = np.array([df])
-    t = np.array([NormalDist().inv_cdf(p)])
+    t = np.array([2.0])
     for _ in range(60):
         tail = _two_sided_t(t, freedom)
         slope = -2 * t * _density(t, freedom) / tail

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from html import escape
 
 from panelview.assess.drivers import Driver
 from panelview.assess.effectors import EffectorFinding
@@ -31,6 +30,13 @@ MOST_MEASUREMENTS = 8
 
 #: Scheme of the pictures of driver bars: `bar:contribution/largest`.
 BAR_SCHEME = "bar"
+
+
+def escape(text: str) -> str:
+    """Text that cannot become markup (the standard library's own brings in all named entities)."""
+    for sign, entity in (("&", "&amp;"), ("<", "&lt;"), (">", "&gt;"), ('"', "&quot;"), ("'", "&#x27;")):
+        text = text.replace(sign, entity)
+    return text
 
 
 def evidence_html(evidence: Evidence, colours: Colours) -> str:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import platform
 import sys
 import threading
 import traceback
@@ -19,6 +18,8 @@ import panelview
 def report_text(kind: type[BaseException], trace: TracebackType | None) -> str:
     """Where it happened, as file, line and function; neither the error's message nor any variable is in it,
     for both can hold values of a panel."""
+    import platform
+
     system = f"{platform.system()} {platform.release()}"
     python = platform.python_version()
     lines = [

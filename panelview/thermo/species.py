@@ -36,7 +36,7 @@ class SpeciesTable:
     def __post_init__(self) -> None:
         if np.any(np.diff(self.reactant) < 0):
             raise ValueError("species must be sorted by reactant")
-        if len(np.unique(self.reactant)) != len(self.reactants):
+        if len(set(self.reactant.tolist())) != len(self.reactants):
             raise ValueError("every reactant needs at least one species")
 
     @cached_property
