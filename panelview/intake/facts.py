@@ -1,31 +1,52 @@
-"""Specimen facts: matrix words, conditions, and what contradicts itself."""
+"""What the words of a metadata cell say: matrix, conditions; and what cannot be used of them."""
 
 from __future__ import annotations
 
 import math
 import re
-from collections.abc import Mapping
+from dataclasses import dataclass
 
 from panelview.catalogue.load import Catalogue
+from panelview.intake.decimal_marks import Mark, Marks
+from panelview.intake.panel import State
+from panelview.intake.values import read_value
 from panelview.thermo.conditions import LIMITS, OutOfModelRange
 from panelview.thermo.physical import ZERO_CELSIUS
 
-#: Usual words for a matrix (common practice, no source), without case, blanks, hyphens and underscores.
-_MATRIX_WORDS = {
+#: Usual words for a matrix (common practice, no source), without case, blanks and punctuation.
+_SAME_AS = {
     "erythrocyte": "erythrocyte erythrocytes redcell redcells redbloodcell redbloodcells rbc rbcs packedcells "
-    "packedredcells ery erythrozyten érythrocytes",
-    "whole_blood": "wholeblood blood vollblut deproteinisedblood deproteinizedblood",
-    "plasma": "plasma serum bloodplasma heparinplasma edtaplasma serumplasma plasmaserum",
+    "packedredcells ery erys erythrozyten érythrocytes",
+    "whole_blood": "wholeblood blood vollblut wb",
+    "plasma": "plasma bloodplasma",
     "csf": "csf liquor cerebrospinalfluid",
     "urine": "urine urin",
     "skeletal_muscle": "skeletalmuscle muscle musclebiopsy skeletalmusclebiopsy muskel",
-    "heart": "heart myocardium heartmuscle",
+    "heart": "heart myocardium heartmuscle herz",
     "liver": "liver liverbiopsy leber",
     "brain_tissue": "braintissue brain",
-    "platelet_or_pbmc": "plateletorpbmc platelet platelets pbmc pbmcs lymphocytes thrombocytes",
-    "cultured_cells": "culturedcells cells fibroblast fibroblasts cellculture skinfibroblasts myotubes",
+    "platelet_or_pbmc": "plateletorpbmc platelet platelets pbmc pbmcs thrombocytes",
+    "cultured_cells": "culturedcells cells cellculture",
 }
-_MATRIX_OF = {word: matrix for matrix, words in _MATRIX_WORDS.items() for word in words.split()}
+
+#: Words for something that is read as this matrix though it is not quite the same: worth a word to the reader.
+_READ_AS = {
+    "plasma": "serum heparinplasma edtaplasma fluorideplasma serumplasma plasmaserum",
+    "whole_blood": "deproteinisedblood deproteinizedblood capillaryblood",
+    "platelet_or_pbmc": "lymphocyte lymphocytes leukocytes leucocytes",
+    "cultured_cells": "fibroblast fibroblasts skinfibroblast skinfibroblasts myoblasts myotubes lymphoblasts",
+}
+_MATRIX_OF = {
+    word: matrix for table in (_SAME_AS, _READ_AS) for matrix, words in table.items() for word in words.split()
+}
+_IS_LIKE = frozenset(word for words in _READ_AS.values() for word in words.split())
+
+_UNIT_BEHIND = {
+    "ph": r"",
+    "temperature": r"\s*(?:°\s*)?C",
+    "ionic_strength": r"\s*(?:mol/[lL]|M)",
+    "pmg": r"",
+}
 
 
 class UnreadableFact(ValueError):
@@ -37,47 +58,57 @@ class UnreadableFact(ValueError):
         self.remedy = remedy
 
 
-def matrix_of(text: str, catalogue: Catalogue) -> str:
-    """Matrix id of a word; "" for a blank cell. Raises UnreadableFact."""
+@dataclass(frozen=True, slots=True)
+class MatrixWord:
+    """The matrix that a word means; is_like: whether the word means something that is only read as it."""
+
+    matrix: str
+    is_like: bool = False
+
+
+def matrix_of(text: str, catalogue: Catalogue) -> MatrixWord:
+    """The matrix a word means; "" for a blank cell. Raises UnreadableFact."""
     word = re.sub(r"[\s_\-/().,]", "", text.strip().casefold())
-    if not word:
-        return ""
+    if not word or word in ("na", "nan", "none", "null"):
+        return MatrixWord("")
     if text.strip() in catalogue.matrices:
-        return text.strip()
+        return MatrixWord(text.strip())
     matrix = _MATRIX_OF.get(word, "")
     if matrix not in catalogue.matrices:
+        shown = text.strip()[:40]
         known = ", ".join(catalogue.matrices)
-        raise UnreadableFact(f"the matrix “{text.strip()}” is not known", f"write one of {known}")
-    return matrix
+        raise UnreadableFact(f"the matrix “{shown}” is not known", f"write one of {known}")
+    return MatrixWord(matrix, word in _IS_LIKE)
 
 
 def condition_of(field: str, text: str) -> float | None:
-    """A condition from a cell (temperature from °C to K); None for a blank cell. Raises UnreadableFact."""
-    plain = text.strip().replace("−", "-")
-    if not plain or plain.casefold() in ("na", "n/a", "nan"):
+    """A condition from a cell (temperature from °C to K); None for a blank cell. Raises UnreadableFact.
+
+    Conditions are small numbers, so a single comma is a decimal comma whatever the file's values use.
+    """
+    plain = re.sub(rf"{_UNIT_BEHIND[field]}\Z", "", text.strip())
+    is_zero = re.fullmatch(r"0+(?:[.,]0*)?", plain) is not None
+    found = read_value(plain, Marks(Mark.COMMA if "," in plain and "." not in plain else Mark.POINT))
+    if found.state is State.MISSING:
         return None
-    plain = re.sub(r"\s*(?:°\s*)?C\Z|\s*mol/L\Z|\s*M\Z", "", plain)
-    if "," in plain and "." not in plain:
-        plain = plain.replace(",", ".")
-    try:
-        value = float(plain)
-    except ValueError:
-        value = math.nan
+    if is_zero:
+        value = 0.0
+    elif found.state is State.MEASURED and not found.flag:
+        value = found.number
+    else:
+        value = _negative(plain)
     if not math.isfinite(value):
-        raise UnreadableFact(f"“{text.strip()}” is not a number", "correct the cell or leave it blank")
+        raise UnreadableFact(f"“{text.strip()[:40]}” is not a number", "correct the cell or leave it blank")
     if field == "temperature":
         value += ZERO_CELSIUS
     lower, upper = LIMITS[field]
-    if not lower <= value <= upper:
+    if not lower - 1e-9 <= value <= upper + 1e-9:
         problem = OutOfModelRange(field, value, lower, upper)
         raise UnreadableFact(str(problem), "correct it, or leave it blank to take the matrix's default")
     return value
 
 
-def disagreement(first: Mapping[str, object], later: Mapping[str, object]) -> str:
-    """The first field in which two rows of one specimen contradict each other; "" where they agree."""
-    for field, value in later.items():
-        known = first.get(field)
-        if value not in (None, "") and known not in (None, "") and value != known:
-            return field
-    return ""
+def _negative(plain: str) -> float:
+    """A negative number, which is out of range and shall be told as that; NaN for what is no number."""
+    text = plain.replace("−", "-").replace(",", ".")
+    return float(text) if re.fullmatch(r"-[0-9]{1,9}(?:\.[0-9]{0,9})?", text) else math.nan

@@ -6,79 +6,63 @@ import re
 
 from panelview.intake.units import UnknownUnit, read_unit
 
-#: Field → usual headings, compared without case, blanks and underscores (common practice, no source).
-_FIELDS: dict[str, tuple[str, ...]] = {
-    "specimen": (
-        "specimen",
-        "specimenid",
-        "sample",
-        "sampleid",
-        "samplename",
-        "samplecode",
-        "probe",
-        "probenid",
-        "tube",
-        "tubeid",
-        "code",
-        "id",
-        "echantillon",
-        "échantillon",
-        "muestra",
-        "campione",
-    ),
-    "participant": (
-        "participant",
-        "participantid",
-        "subject",
-        "subjectid",
-        "patientcode",
-        "proband",
-        "pseudonym",
-    ),
-    "group": ("group", "gruppe", "cohort", "groupe", "grupo", "gruppo", "arm", "class"),
-    "matrix": ("matrix", "matrices", "specimentype", "sampletype", "material", "tissue", "probenmaterial"),
-    "collected": (
-        "collected",
-        "collectiontime",
-        "collectiondate",
-        "time",
-        "date",
-        "datetime",
-        "drawn",
-        "collecteddatetime",
-        "entnahme",
-        "datum",
-    ),
-    "ph": ("ph",),
-    "temperature": ("temperaturec", "temperature", "temp", "tempc"),
-    "ionic_strength": ("ionicstrengthmolperl", "ionicstrength", "ionicstrengthm"),
-    "pmg": ("pmg",),
-    "analyte": ("analyte", "metabolite", "compound", "name", "analytename", "parameter", "test", "analyt"),
-    "value": ("value", "result", "concentration", "conc", "wert", "ergebnis", "valeur"),
-    "unit": ("unit", "units", "einheit", "unite", "unité", "uom"),
-    "comparator": ("comparator", "operator", "qualifier", "sign"),
-    "flag": ("flag", "flags", "status", "remark"),
-    "cv_percent": ("cvpercent", "cv", "cvpct", "cv%"),
-    "lloq": ("lloq", "loq", "lod", "limit"),
-    "replicate": ("replicate", "rep", "replikat"),
-    "compartment": ("compartment",),
+#: Field → usual headings, compared without case, blanks and punctuation (common practice, no source).
+_FIELDS: dict[str, str] = {
+    "specimen": "specimen specimenid specimencode sample sampleid samplename samplecode probe probenid probennummer "
+    "tube tubeid code id echantillon échantillon muestra campione",
+    "participant": "participant participantid subject subjectid patientcode proband pseudonym",
+    "group": "group gruppe cohort groupe grupo gruppo arm class",
+    "matrix": "matrix specimentype sampletype material tissue probenmaterial",
+    "collected": "collected collectiontime collectiondate time date datetime drawn collecteddatetime entnahme datum",
+    "ph": "ph",
+    "temperature": "temperaturec temperature temp tempc",
+    "ionic_strength": "ionicstrengthmolperl ionicstrengthmoll ionicstrength ionicstrengthm",
+    "pmg": "pmg",
+    "analyte": "analyte metabolite compound name analytename parameter test analyt metabolit",
+    "value": "value result concentration conc wert ergebnis valeur",
+    "unit": "unit units einheit unite unité uom",
+    "comparator": "comparator operator qualifier sign",
+    "flag": "flag flags remark",
+    "status": "status",
+    "cv_percent": "cvpercent cv cvpct cv%",
+    "lloq": "lloq loq lod limit",
+    "replicate": "replicate rep replikat",
+    "compartment": "compartment",
 }
-_BY_HEADING = {heading: field for field, headings in _FIELDS.items() for heading in headings}
+_BY_HEADING = {heading: field for field, headings in _FIELDS.items() for heading in headings.split()}
 
-#: Columns of long files that carry nothing the program reads.
-_IDLE = frozenset({"hmdb", "method", "chebi", "kegg", "lab", "laboratory", "instrument", "batch", "comment"})
+#: The contract's own heading of a field, where it is not the field's name.
+_OWN_HEADING = {"temperature": "temperature_c", "ionic_strength": "ionic_strength_mol_per_l"}
 
-_BRACKETED = re.compile(r"(?P<name>.+?)\s*[\[(](?P<unit>[^\[\]]*?)[\])]\s*\Z")
-_SUFFIX = re.compile(r"(?P<name>.+?)[ _,]\s*(?P<unit>[kmunpµμ]?(?:M|mol[/_]\S+|g/\S+))\Z")
+#: Columns that carry nothing the program reads, and are passed over without a word.
+_IDLE = frozenset("hmdb hmdbid method chebi kegg lab laboratory instrument batch comment comments".split())
+
+_PUNCTUATION = re.compile(r"[\s_\-.()\[\]°/]")
+_SUFFIX = re.compile(r"(?P<name>.*[^\s_,])[ _,]\s*(?P<unit>[munpµμ]?(?:M|[mM]ol(?:/|_per_|_)\S+|g(?:/|_per_|_)\S+))\Z")
+
+
+def _plain(heading: str) -> str:
+    return _PUNCTUATION.sub("", heading.strip().casefold())
 
 
 def field_of(heading: str) -> str:
     """The field a heading names, "" where it names none."""
-    return _BY_HEADING.get(re.sub(r"[\s_\-.]", "", heading.strip().casefold()), "")
+    return _BY_HEADING.get(_plain(heading), "")
+
+
+def is_own_heading(heading: str, field: str) -> bool:
+    """Whether this is the very heading that the program's own description gives the field."""
+    return heading.strip().casefold() == _OWN_HEADING.get(field, field)
+
+
+def own_heading(field: str) -> str:
+    """The heading to be recommended for a field."""
+    return _OWN_HEADING.get(field, field)
 
 
 def is_idle(heading: str) -> bool:
-    return heading.strip().casefold() in _IDLE
+    """Whether a column of this heading is known to carry nothing the program reads."""
+    return _plain(heading) in _IDLE
 
 
 def split_unit(heading: str) -> tuple[str, str]:
@@ -86,25 +70,34 @@ def split_unit(heading: str) -> tuple[str, str]:
 
     A bracket that holds no unit stays part of the name.
     """
-    bracketed = _BRACKETED.match(heading.strip())
-    if bracketed and _looks_like_unit(bracketed["unit"]):
-        return bracketed["name"].strip(), bracketed["unit"].strip()
-    suffix = _SUFFIX.match(heading.strip())
+    text = heading.strip()
+    bracket = _last_bracket(text)
+    if bracket > 0 and _looks_like_unit(text[bracket + 1 : -1]):
+        return text[:bracket].strip(" ,_"), text[bracket + 1 : -1].strip()
+    suffix = _SUFFIX.match(text) if len(text) <= 200 else None
     if suffix:
-        unit = suffix["unit"].replace("_", "/")
+        unit = suffix["unit"].replace("_per_", "/").replace("_", "/", 1)
         if _looks_like_unit(unit):
             return suffix["name"].strip(" ,_"), unit
-    return heading.strip(), ""
+    return text, ""
+
+
+def _last_bracket(text: str) -> int:
+    """Where the bracket opens that closes at the end of the text; −1 where none does."""
+    if not text.endswith((")", "]")):
+        return -1
+    depth = 0
+    for k in range(len(text) - 1, -1, -1):
+        depth += (text[k] in ")]") - (text[k] in "([")
+        if depth == 0:
+            return k
+    return -1
 
 
 def _looks_like_unit(text: str) -> bool:
+    """Known, or refused for what it means (percent, ratio: the reason is worth telling), or of a unit's shape."""
     try:
         read_unit(text)
     except UnknownUnit as error:
-        # Refused on purpose (percent, ratio …): still a unit, and the reason is worth telling.
-        return (
-            bool(text.strip())
-            and ("/" in text or "is not known" not in error.what)
-            and any(c.isalpha() or c == "%" for c in text)
-        )
+        return error.is_known or bool(re.fullmatch(r"\s*[munpµμ]?(?:mol|g|l|L|U)\s*/.{1,40}", text))
     return True

@@ -5,6 +5,9 @@ from __future__ import annotations
 import csv
 import hashlib
 import io
+import re
+import stat
+from collections import Counter
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -17,57 +20,60 @@ LARGEST_FILE = 200 * 1024 * 1024
 #: A table wider than this is no panel.
 MOST_COLUMNS = 5000
 
-_DELIMITERS = {",": "comma", ";": "semicolon", "\t": "tab", "|": "bar"}
+#: Where two delimiters cut equally well, the first wins: a comma is a decimal mark as well.
+_DELIMITERS = {"\t": "tab", ";": "semicolon", "|": "bar", ",": "comma"}
 
+_AS_CSV = "save the sheet as CSV (UTF-8) and open that"
 _NOT_TEXT = (
-    (b"PK\x03\x04", "a spreadsheet or another zipped file", "save the sheet as CSV (UTF-8) and open that"),
-    (b"\xd0\xcf\x11\xe0", "an old binary spreadsheet", "save the sheet as CSV (UTF-8) and open that"),
+    (b"PK\x03\x04", "a spreadsheet or another zipped file", _AS_CSV),
+    (b"\xd0\xcf\x11\xe0", "an old binary spreadsheet", _AS_CSV),
     (b"%PDF", "a PDF", "ask the laboratory for its export as CSV, or type the values into one"),
     (b"PAR1", "a Parquet file", "export it as CSV (UTF-8) and open that"),
     (b"SQLite format 3\x00", "a database", "export the panel as CSV (UTF-8) and open that"),
     (b"\x1f\x8b", "a gzipped file", "unpack it first"),
 )
+_MARKUP = (
+    (re.compile(r"<(?:!doctype|html|table|meta)\b", re.IGNORECASE), "a web page", _AS_CSV),
+    (re.compile(r"<\?xml\b"), "an XML document", "export it as CSV (UTF-8) and open that"),
+    (re.compile(r"[{\[]\s*[\"{\[]"), "a JSON document", "export it as CSV (UTF-8) and open that"),
+    (re.compile(r"MTD\t"), "an mzTab file", "export the panel as CSV (UTF-8) and open that"),
+)
+
+#: Characters that no text table holds. XML forbids most of them, so no later output could carry them.
+_CONTROL = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]")
 
 
 @dataclass(frozen=True)
 class Grid:
-    """A table as text: rows[k] are the cells of line lines[k] (1-based); all rows have one width."""
+    """A table as text: rows[k] are the cells of the row that starts on line lines[k] (1-based); all rows
+    have one width and at least one cell that is not blank."""
 
     source: SourceFile
     rows: list[list[str]]
     lines: list[int]
-    delimiter: str
-    encoding: str
+    layout: str
     problems: tuple[Problem, ...]
-
-    @property
-    def layout(self) -> str:
-        return f"{_DELIMITERS[self.delimiter]}-separated, {self.encoding}"
 
 
 def read_file(path: Path) -> bytes:
     """The bytes of a file of bearable size. Raises InputRefused."""
     name = path.name or str(path)
     try:
-        if path.is_dir():
-            raise refused(
-                name, 0, "", "this is a folder, not a panel file", "give the files in it one by one"
-            )
-        size = path.stat().st_size
-        if size > LARGEST_FILE:
-            raise refused(
-                name,
-                0,
-                "",
-                f"the file has {size / 2**20:,.0f} MB, more than the {LARGEST_FILE / 2**20:,.0f} MB read",
-                "split it, or export only the analytes needed",
-            )
+        found = path.stat()
+        if stat.S_ISDIR(found.st_mode):
+            raise refused(name, 0, "", "this is a folder, not a panel file", "give the files in it one by one")
+        if not stat.S_ISREG(found.st_mode):
+            raise refused(name, 0, "", "this is a device or a pipe, not a file", "save the panel to a file first")
+        if found.st_size > LARGEST_FILE:
+            size, most = (f"{n / 2**20:,.0f} MB" for n in (found.st_size, LARGEST_FILE))
+            remedy = "split it, or export only the analytes needed"
+            raise refused(name, 0, "", f"the file has {size}, more than the {most} that are read", remedy)
         return path.read_bytes()
     except FileNotFoundError as error:
         raise refused(name, 0, "", "there is no such file", "check the path") from error
-    except OSError as error:
-        why = error.strerror or type(error).__name__
-        raise refused(name, 0, "", f"the file cannot be read ({why})", "check its permissions") from error
+    except (OSError, ValueError) as error:
+        why = getattr(error, "strerror", None) or str(error)
+        raise refused(name, 0, "", f"the file cannot be read ({why})", "check its name and permissions") from error
 
 
 def read_grid(name: str, data: bytes) -> Grid:
@@ -78,10 +84,19 @@ def read_grid(name: str, data: bytes) -> Grid:
     for magic, what, remedy in _NOT_TEXT:
         if data.startswith(magic):
             raise refused(name, 0, "", f"the file is {what}, which is not read yet", remedy)
-    text, encoding, notes = _decode(name, data)
+    text, encoding, problems = _decode(name, data)
+    control = _CONTROL.search(text)
+    if control:
+        line = text.count("\n", 0, control.start()) + 1
+        what = f"the file holds the control character U+{ord(control[0]):04X}, so it is no plain text"
+        raise refused(name, line, "", what, "export it as CSV in UTF-8")
+    start = text[:256].lstrip()
+    for pattern, what, remedy in _MARKUP:
+        if pattern.match(start):
+            raise refused(name, 0, "", f"the file is {what}, which is not read yet", remedy)
     delimiter = _delimiter(text)
     rows, lines = _rows(name, text, delimiter)
-    return Grid(source, rows, lines, delimiter, encoding, notes)
+    return Grid(source, rows, lines, f"{_DELIMITERS[delimiter]}-separated, {encoding}", problems)
 
 
 def refused(name: str, row: int, column: str, what: str, remedy: str) -> InputRefused:
@@ -90,105 +105,74 @@ def refused(name: str, row: int, column: str, what: str, remedy: str) -> InputRe
 
 
 def _decode(name: str, data: bytes) -> tuple[str, str, tuple[Problem, ...]]:
+    """Text, name of the encoding, what was assumed. By mark, else UTF-8, else Windows-1252: no guesser, because
+    those take one Western code page for another."""
     if data.startswith((b"\xff\xfe", b"\xfe\xff")):
         try:
-            return _clean(name, data.decode("utf-16")), "UTF-16", ()
+            return data.decode("utf-16"), "UTF-16", ()
         except UnicodeDecodeError as error:
-            raise refused(
-                name, 0, "", "the file is damaged UTF-16 text", "save it as CSV in UTF-8"
-            ) from error
+            raise refused(name, 0, "", "the file is damaged UTF-16 text", "save it as CSV in UTF-8") from error
     try:
-        return _clean(name, data.decode("utf-8-sig")), "UTF-8", ()
+        return data.decode("utf-8-sig"), "UTF-8", ()
     except UnicodeDecodeError as error:
         line = data.count(b"\n", 0, error.start) + 1
     try:
         text = data.decode("cp1252")
     except UnicodeDecodeError as error:
-        raise refused(
-            name, line, "", "the text is neither UTF-8 nor Windows-1252", "save it as CSV in UTF-8"
-        ) from error
-    note = Problem(
-        Severity.NOTE,
-        name,
-        line,
-        "",
-        "the text is not UTF-8 and was read as Windows-1252",
-        "check names with accents or µ, or save the file as UTF-8",
-    )
-    return _clean(name, text), "Windows-1252", (note,)
-
-
-def _clean(name: str, text: str) -> str:
-    """Refuse control characters, which mean that this is no text table."""
-    for k, char in enumerate(text):
-        if char < " " and char not in "\t\r\n":
-            line = text.count("\n", 0, k) + 1
-            raise refused(
-                name,
-                line,
-                "",
-                f"the file holds the control character U+{ord(char):04X}",
-                "export it as plain CSV",
-            )
-        if k > 200_000:  # what passes this far is text; the rest is checked in one sweep
-            break
-    if "\x00" in text:
-        line = text.count("\n", 0, text.index("\x00")) + 1
-        raise refused(name, line, "", "the file holds the control character U+0000", "export it as plain CSV")
-    return text
+        what = "the text is neither UTF-8 nor Windows-1252"
+        raise refused(name, line, "", what, "save it as CSV in UTF-8") from error
+    what = "the text is not UTF-8 and was read as Windows-1252"
+    remedy = "check names with accents or µ, or save the file as UTF-8"
+    return text, "Windows-1252", (Problem(Severity.NOTE, name, line, "", what, remedy),)
 
 
 def _delimiter(text: str) -> str:
-    """The delimiter that cuts the first lines into the same number (over one) of cells; else the commonest."""
-    head = [line for line in text[:65536].splitlines()[:50] if line.strip()]
-    best, best_score = ",", (-1.0, -1)
+    """The delimiter that cuts most of the first lines into one and the same number (over one) of cells."""
+    head = [line for line in re.split(r"\r\n|\n|\r", text[:65536])[:50] if line.strip()]
+    if len(text) > 65536:
+        head = head[:-1] or head  # the last line may be cut short
+    best, best_score = ",", (-1.0, 0)
     for delimiter in _DELIMITERS:
-        widths = [len(row) for row in csv.reader(head, delimiter=delimiter)]
-        if not widths or widths[0] < 2:
-            continue
-        score = (sum(w == widths[0] for w in widths) / len(widths), widths[0])
-        if score > best_score:
+        counts = Counter(len(row) for row in csv.reader(head, delimiter=delimiter))
+        width, rows = max(counts.items(), key=lambda item: (item[1], item[0]), default=(0, 0))
+        score = (rows / len(head), width)
+        if width > 1 and score > best_score:
             best, best_score = delimiter, score
     return best
 
 
 def _rows(name: str, text: str, delimiter: str) -> tuple[list[list[str]], list[int]]:
-    csv.field_size_limit(131072)
     reader = csv.reader(io.StringIO(text, newline=""), delimiter=delimiter, strict=True)
     rows: list[list[str]] = []
     lines: list[int] = []
-    width = 0
+    width, line = 0, 1
     try:
         for cells in reader:
-            if not any(c.strip() for c in cells):
-                continue
-            if not rows:
-                width = len(cells)
-                if width > MOST_COLUMNS:
-                    raise refused(
-                        name, reader.line_num, "", f"the table has {width:,} columns", "export fewer"
-                    )
-            elif len(cells) != width:
-                spare = cells[width:]
-                if len(cells) < width or any(c.strip() for c in spare):
-                    raise refused(
-                        name,
-                        reader.line_num,
-                        "",
-                        f"this line has {len(cells)} cells, the heading {width}",
-                        "make them equal (a decimal comma in a comma-separated file needs quotes)",
-                    )
-                del cells[width:]
-            rows.append(cells)
-            lines.append(reader.line_num)
+            if any(map(str.strip, cells)):
+                width = width or len(cells)
+                if len(cells) != width:
+                    _even(name, line, cells, width, first=lines[0], is_second=len(rows) == 1)
+                rows.append(cells)
+                lines.append(line)
+            line = reader.line_num + 1
     except csv.Error as error:
-        raise refused(
-            name,
-            reader.line_num,
-            "",
-            f"the table cannot be cut into cells ({error})",
-            "check for an open quote",
-        ) from error
+        what = f"the table cannot be cut into cells ({error})"
+        raise refused(name, line, "", what, "check this line for an open quote") from error
     if not rows:
         raise refused(name, 0, "", "the file holds no text", "export the panel again")
+    if width > MOST_COLUMNS:
+        what = f"the table has {width:,} columns, more than the {MOST_COLUMNS:,} that are read"
+        raise refused(name, lines[0], "", what, "export fewer columns, or one value a row")
     return rows, lines
+
+
+def _even(name: str, line: int, cells: list[str], width: int, *, first: int, is_second: bool) -> None:
+    """Cut blank cells off the end of a row that is too long; raise InputRefused for any other width."""
+    if width == 1 and is_second:
+        what, remedy = "the first line holds a single cell, so it is no heading", "remove the lines above the heading"
+        raise refused(name, first, "", what, remedy)
+    if len(cells) < width or any(map(str.strip, cells[width:])):
+        what = f"this line has {len(cells)} cells, the heading has {width}"
+        remedy = "make them equal (a decimal comma in a comma-separated file needs quotes)"
+        raise refused(name, line, "", what, remedy)
+    del cells[width:]

@@ -2,368 +2,202 @@
 
 from __future__ import annotations
 
-import math
-from collections import defaultdict
-from dataclasses import dataclass, field
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
 
 from panelview.catalogue.load import Catalogue
+from panelview.intake.conversion import Converter, Treatment
+from panelview.intake.decimal_marks import Marks, decimal_mark
 from panelview.intake.names import Names
-from panelview.intake.panel import Match, State
-from panelview.intake.problems import Problem, Severity
-from panelview.intake.shapes import Cell, Shaped
-from panelview.intake.units import MASS_UNSTATED, Unit, UnknownUnit, read_unit
-from panelview.intake.values import Mark, Value, decimal_mark, read_value
+from panelview.intake.panel import Readings, SpecimenFacts, State
+from panelview.intake.records import Records, Series, same_text, texts
+from panelview.intake.values import STATUS_WORDS, Column, Value, read_values
 
-#: Analytical coefficient of variation where the file states none, printed as a default (common practice for
-#: chromatographic panels, no source).
-DEFAULT_CV = 0.08
-
-#: Shared relative uncertainty of a plain amount per litre where the matrix is not stated.
-_UNSTATED_FACTOR_SD = 0.10
-
-
-@dataclass(slots=True)
-class Reading:
-    """One cell as understood; fields as in panel.Readings."""
-
-    specimen: str
-    analyte: str
-    name: str
-    value: str
-    unit: str
-    flag: str
-    state: State
-    mol_per_l: float
-    sd_ln: float
-    sd_is_default: bool
-    shared_sd_ln: float
-    basis: str
-    row: int
-    column: str
-    note: str
-    replicate: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class _Scale:
-    """mol/L of pool water per unit of the value, its shared uncertainty, and what was assumed."""
-
-    factor: float
-    shared_sd: float
-    basis: str
-    note: str
-
-
-@dataclass(frozen=True, slots=True)
-class _Refusal:
-    what: str
-    remedy: str
+_UNDER_LIMIT = "reported under the limit of quantification, so taken as below it"
+_NO_LIMIT = "below a limit that the file does not state, so nothing can be said of its size"
+_LIMIT_SIGNS = ("<", "<=", "≤", ">", ">=", "≥")
 
 
 @dataclass
-class Understanding:
-    """What one file says, cell by cell."""
+class Understood:
+    """What one file says, cell by cell.
 
-    readings: list[Reading] = field(default_factory=list)
-    problems: list[Problem] = field(default_factory=list)
-    matches: dict[str, Match] = field(default_factory=dict)
-    mark: Mark = Mark.POINT
-
-
-class Understander:
-    """Understands the cells of one file; everything that repeats is worked out once."""
-
-    def __init__(self, catalogue: Catalogue, names: Names, file: str) -> None:
-        self._catalogue = catalogue
-        self._names = names
-        self._file = file
-        self._scales: dict[tuple[str, str, str, str], _Scale | _Refusal] = {}
-        self._told: set[tuple[str, str]] = set()
-        self._made = Understanding()
-
-    def understand(self, shaped: Shaped, matrix_of: dict[str, str]) -> Understanding:
-        """matrix_of: specimen code → matrix id ("" where not stated); cells of other specimens are skipped."""
-        mark, mixed, doubtful = decimal_mark(shaped.number_texts)
-        self._made.mark = mark
-        word = "point" if mark is Mark.POINT else "comma"
-        if mixed:
-            self._note(
-                0,
-                "",
-                f"decimal points and commas are mixed; the file is read with a decimal {word}",
-                "write all numbers with one decimal mark",
-            )
-        elif doubtful:
-            self._note(
-                0,
-                "",
-                f"whether “{mark.value}” before three digits marks decimals or thousands cannot be told; "
-                f"it was read as a decimal {word}",
-                "write one more decimal, or no thousands mark",
-            )
-        for cell in shaped.cells:
-            if cell.specimen in matrix_of:
-                self._made.readings.append(self._reading(cell, matrix_of[cell.specimen], mark))
-        return self._made
-
-    def _note(self, row: int, column: str, what: str, remedy: str) -> None:
-        self._made.problems.append(Problem(Severity.NOTE, self._file, row, column, what, remedy))
-
-    def _reading(self, cell: Cell, matrix: str, mark: Mark) -> Reading:
-        match = self._match(cell)
-        value = self._value(cell, mark)
-        made = Reading(
-            specimen=cell.specimen,
-            analyte=match.analyte,
-            name=cell.name,
-            value=cell.value.strip(),
-            unit=cell.unit,
-            flag=" ".join(f for f in (cell.flag, value.flag) if f),
-            state=value.state,
-            mol_per_l=math.nan,
-            sd_ln=math.nan,
-            sd_is_default=False,
-            shared_sd_ln=math.nan,
-            basis="",
-            row=cell.row,
-            column=cell.column,
-            note="",
-            replicate=cell.replicate,
-        )
-        if value.state is State.REFUSED:
-            self._refuse(made, value.why, value.remedy)
-            return made
-        if match.how == "sum" or not match.analyte or self._names.is_known_outside(match.analyte):
-            self._set_unusable(made, match)
-            return made
-        if value.state is State.MISSING:
-            return made
-        self._convert(made, value, cell, matrix, mark)
-        return made
-
-    def _match(self, cell: Cell) -> Match:
-        match = self._names.match(cell.name)
-        if cell.name in self._made.matches:
-            return match
-        self._made.matches[cell.name] = match
-        if match.how == "unknown":
-            offered = (
-                f"perhaps {', '.join(match.candidates)}" if match.candidates else "see resources/names.csv"
-            )
-            self._value_problem(cell, f"the analyte “{cell.name}” is not known", f"rename it ({offered})")
-        elif match.how == "ambiguous":
-            self._value_problem(
-                cell, f"“{cell.name}” may mean {' or '.join(match.candidates)}", "write the full name"
-            )
-        elif match.how == "sum":
-            self._note(
-                cell.row,
-                cell.column,
-                f"“{cell.name}” is the sum of {', '.join(match.candidates)}",
-                "it is kept as a sum and no step uses it",
-            )
-        elif self._names.is_known_outside(match.analyte):
-            self._note(
-                cell.row,
-                cell.column,
-                f"“{cell.name}” ({match.analyte}) takes part in no catalogued step",
-                "it is kept and not used",
-            )
-        return match
-
-    def _value_problem(self, cell: Cell, what: str, remedy: str) -> None:
-        self._made.problems.append(
-            Problem(Severity.VALUE, self._file, cell.row, cell.column, what, remedy, cell.specimen)
-        )
-
-    def _value(self, cell: Cell, mark: Mark) -> Value:
-        text = cell.value
-        if cell.comparator in ("<", "<=", ">", ">=", "≤", "≥") and text.strip():
-            text = cell.comparator + text
-        value = read_value(text, mark)
-        if not cell.name:
-            return Value(State.REFUSED, math.nan, value.flag, "no analyte is named", "fill in the analyte")
-        return value
-
-    def _refuse(self, made: Reading, what: str, remedy: str) -> None:
-        made.state, made.note = State.REFUSED, what
-        self._made.problems.append(
-            Problem(Severity.VALUE, self._file, made.row, made.column, what, remedy, made.specimen)
-        )
-
-    def _set_unusable(self, made: Reading, match: Match) -> None:
-        if made.state is State.MISSING:
-            return
-        if match.how == "sum":
-            made.state = State.SUM
-            made.note = f"sum of {', '.join(match.candidates)}; kept as a sum"
-        elif match.analyte:
-            made.state, made.note = State.UNMATCHED, "known, but takes part in no catalogued step"
-        elif match.how == "ambiguous":
-            made.state, made.note = State.UNMATCHED, f"may mean {' or '.join(match.candidates)}"
-        else:
-            made.state = State.UNMATCHED
-            made.note = (
-                f"unknown; near names: {', '.join(match.candidates)}" if match.candidates else "unknown"
-            )
-
-    def _convert(self, made: Reading, value: Value, cell: Cell, matrix: str, mark: Mark) -> None:
-        scale = self._scale(made.analyte, cell.name, cell.unit, matrix)
-        if isinstance(scale, _Refusal):
-            made.state, made.note = State.REFUSED, scale.what
-            self._tell_once(made, scale)
-            return
-        number = value.number
-        limit = read_value(cell.lloq, mark).number if cell.lloq else math.nan
-        notes = [scale.note] if scale.note else []
-        if value.state is State.BELOW_LOQ and math.isnan(number):
-            number = limit
-            if math.isnan(number):
-                notes.append("below a limit that the file does not state: nothing can be said of its size")
-        elif value.state is State.MEASURED and number < limit:
-            made.state, number = State.BELOW_LOQ, limit
-            notes.append("reported under the limit of quantification: taken as below it")
-        made.mol_per_l = number * scale.factor
-        made.shared_sd_ln, made.basis = scale.shared_sd, scale.basis
-        made.sd_ln, made.sd_is_default = self._assay_sd(cell, made)
-        made.note = "; ".join(notes)
-
-    def _assay_sd(self, cell: Cell, made: Reading) -> tuple[float, bool]:
-        """Standard uncertainty of ln c from the coefficient of variation: √ln(1 + CV²)."""
-        cv = DEFAULT_CV
-        stated = False
-        if cell.cv:
-            text = cell.cv.replace("%", "").replace(",", ".").strip()
-            try:
-                percent = float(text)
-            except ValueError:
-                percent = math.nan
-            if math.isfinite(percent) and 0 < percent <= 200:
-                cv, stated = percent / 100, True
-            else:
-                self._tell_once(
-                    made,
-                    _Refusal(
-                        f"the CV “{cell.cv}” is not a percentage between 0 and 200",
-                        f"correct it; {DEFAULT_CV:.0%} was taken",
-                    ),
-                    Severity.NOTE,
-                )
-        return math.sqrt(math.log1p(cv**2)), not stated
-
-    def _tell_once(self, made: Reading, refusal: _Refusal, severity: Severity = Severity.VALUE) -> None:
-        key = (made.column if made.column else made.name, refusal.what)
-        if key not in self._told:
-            self._told.add(key)
-            self._made.problems.append(
-                Problem(
-                    severity, self._file, made.row, made.column, refusal.what, refusal.remedy, made.specimen
-                )
-            )
-
-    def _scale(self, analyte: str, name: str, unit: str, matrix: str) -> _Scale | _Refusal:
-        key = (analyte, name, unit, matrix)
-        if key not in self._scales:
-            self._scales[key] = self._work_out(*key)
-        return self._scales[key]
-
-    def _work_out(self, analyte: str, name: str, text: str, matrix: str) -> _Scale | _Refusal:
-        try:
-            unit = read_unit(text)
-        except UnknownUnit as error:
-            return _Refusal(error.what, error.remedy)
-        factor, notes = unit.factor, []
-        if unit.is_mass:
-            mass = self._names.mass_of(name) or self._catalogue.metabolites[analyte].molar_mass
-            if mass is None:
-                return _Refusal(f"{analyte} has no molar mass to convert “{text}” with", "report it in mol")
-            factor /= mass
-            notes.append(f"molar mass {mass:g} g/mol")
-        basis = self._basis(unit, matrix, notes, text)
-        if isinstance(basis, _Refusal):
-            return basis
-        if not matrix:
-            if basis != "litre":
-                return _Refusal(
-                    f"“{text}” needs the matrix to be converted",
-                    "state the matrix in the file or when opening it",
-                )
-            return _Scale(factor, _UNSTATED_FACTOR_SD, basis, "; ".join(notes))
-        conversion = self._catalogue.conversions.get((matrix, basis))
-        if conversion is None:
-            return _Refusal(
-                f"no conversion of “{text}” to mol/L is known for {matrix}", "report the value per litre"
-            )
-        if conversion.litres != 1.0:
-            per = basis.replace("_", " ")
-            notes.append(f"{conversion.litres:g} L pool water per {per}")
-        return _Scale(factor / conversion.litres, conversion.relative_sd, basis, "; ".join(notes))
-
-    def _basis(self, unit: Unit, matrix: str, notes: list[str], text: str) -> str | _Refusal:
-        if unit.basis != MASS_UNSTATED:
-            return unit.basis
-        usual = self._catalogue.matrices[matrix].usual_basis if matrix else ""
-        if not usual.startswith("kg_"):
-            return _Refusal(f"“{text}” does not say wet or dry weight", "write µmol/g ww or mmol/kg dw")
-        words = usual.removeprefix("kg_")
-        notes.append(f"weight taken as {words}, as usual for {matrix}")
-        key = (text, f"assumed {matrix}")
-        if key not in self._told:
-            self._told.add(key)
-            self._note(
-                0,
-                "",
-                f"“{text}” does not say wet or dry; {words} weight was assumed, as usual for {matrix}",
-                f"write {text.strip()} ww or {text.strip()} dw",
-            )
-        return usual
-
-
-def settle_repeats(made: Understanding, file: str) -> None:
-    """Readings of one specimen and analyte: replicates are combined, unexplained repeats refused.
-
-    Combined to the geometric mean, with the scatter of the replicates in place of a default CV.
+    readings: all cells of the specimens asked for, in file order; treatments: how series were converted in each
+    matrix; treatment, series_of: [reading] index into treatments and into the records' series; column: the cells as
+    numbers; replicates: [reading] as written; marks: the file's decimal mark, `doubtful` an index of readings.
     """
-    groups: defaultdict[tuple[str, str], list[Reading]] = defaultdict(list)
-    for reading in made.readings:
-        if reading.analyte and reading.state in (State.MEASURED, State.BELOW_LOQ, State.ABOVE_RANGE):
-            groups[reading.specimen, reading.analyte].append(reading)
-    for (specimen, analyte), readings in groups.items():
-        if len(readings) < 2:
-            continue
-        numbered = {r.replicate for r in readings}
-        if (
-            len(numbered) == len(readings)
-            and "" not in numbered
-            and all(r.state is State.MEASURED for r in readings)
-        ):
-            _combine(readings)
-            continue
-        rows = ", ".join(str(r.row) for r in readings)
-        for r in readings:
-            r.state, r.mol_per_l, r.note = State.REFUSED, math.nan, f"reported more than once (rows {rows})"
-        made.problems.append(
-            Problem(
-                Severity.VALUE,
-                file,
-                readings[1].row,
-                readings[1].column,
-                f"{analyte} of {specimen} is reported more than once (rows {rows})",
-                "keep one value, or number them in a replicate column to have them averaged",
-                specimen,
-            )
-        )
+
+    readings: Readings
+    treatments: list[Treatment]
+    treatment: NDArray[np.intp]
+    series: list[Series]
+    series_of: NDArray[np.intp]
+    column: Column
+    replicates: NDArray[np.object_]
+    marks: Marks
+
+    def analyte_number(self, catalogue: Catalogue) -> NDArray[np.intp]:
+        """[reading] index of the metabolite in the catalogue, −1 where the reading has none."""
+        number = {analyte: k for k, analyte in enumerate(catalogue.metabolites)}
+        of_treatment = [number.get(t.match.analyte, -1) for t in self.treatments]
+        return np.array(of_treatment, dtype=np.intp)[self.treatment]
 
 
-def _combine(readings: list[Reading]) -> None:
-    logs = [math.log(r.mol_per_l) for r in readings]
-    mean = sum(logs) / len(logs)
-    scatter = math.sqrt(sum((x - mean) ** 2 for x in logs) / (len(logs) - 1))
-    first = readings[0]
-    first.mol_per_l = math.exp(mean)
-    first.sd_ln = max(first.sd_ln, scatter) / math.sqrt(len(logs))
-    first.note = "; ".join(n for n in (first.note, f"geometric mean of {len(logs)} replicates") if n)
-    for other in readings[1:]:
-        other.state = State.MISSING
-        other.mol_per_l = math.nan
-        other.note = f"replicate, combined in row {first.row}"
+def understand(records: Records, specimens: Sequence[SpecimenFacts], catalogue: Catalogue, names: Names) -> Understood:
+    """Understand the cells of a file; those of specimens that are not among `specimens` are left out."""
+    position = {facts.code: k for k, facts in enumerate(specimens)}
+    of_code = np.array([position.get(code, -1) for code in records.codes], dtype=np.intp)
+    specimen = of_code[records.specimen]
+    kept = np.flatnonzero(specimen >= 0)
+    specimen, series_of = specimen[kept], records.series_of[kept]
+    values = records.value[kept].tolist()
+    marks = _marks(values, series_of, [bool(names.match(s.name).analyte) for s in records.series])
+    column = read_values(_with_comparators(values, series_of, records.series), marks)
+    status = None if records.status is None else records.status[kept]
+    if status is not None:
+        _apply_status(status, column)
+    treatments, treatment = _treat(records.series, series_of, specimen, specimens, Converter(catalogue, names, marks))
+    readings = _readings(records, kept, specimen, values, column, treatments, treatment)
+    if status is not None:
+        _add_status(readings.flag, status)
+    replicates = same_text("", len(kept)) if records.replicate is None else records.replicate[kept]
+    return Understood(readings, treatments, treatment, records.series, series_of, column, replicates, marks)
+
+
+def _marks(values: list[str], series_of: NDArray[np.intp], is_analyte: list[bool]) -> Marks:
+    """The decimal mark, from the cells of known analytes only: other columns may hold dates or codes."""
+    if all(is_analyte):
+        return decimal_mark(values)
+    chosen = np.flatnonzero(np.array(is_analyte, dtype=bool)[series_of]).tolist()
+    found = decimal_mark([values[k] for k in chosen])
+    return Marks(found.mark, found.is_mixed, chosen[found.doubtful]) if found.doubtful >= 0 else found
+
+
+def _with_comparators(values: list[str], series_of: NDArray[np.intp], series: Sequence[Series]) -> list[str]:
+    """The cells with the sign of a comparator column before them, unless they carry it already."""
+    signs = [s.comparator if s.comparator in _LIMIT_SIGNS else "" for s in series]
+    if not any(signs):
+        return values
+    made = list(values)
+    for k, s in enumerate(series_of.tolist()):
+        if signs[s] and made[k] and not made[k].startswith(signs[s][0]):
+            made[k] = signs[s] + made[k]
+    return made
+
+
+def _apply_status(status: NDArray[np.object_], column: Column) -> None:
+    """Let a status column say that a value is a limit, or that there is none."""
+    meaning = {word: STATUS_WORDS.get(word.strip().casefold().replace(" ", "_")) for word in set(status.tolist())}
+    if not any(m is not None for m in meaning.values()):
+        return
+    for k, word in enumerate(status.tolist()):
+        said, found = meaning[word], State(int(column.state[k]))
+        if said is None or said is found:
+            continue
+        flag = column.odd[k].flag if k in column.odd else ""
+        if said is State.MISSING:
+            why = f"the status says “{word}”, and the cell holds a value"
+            changed = Value(State.REFUSED, np.nan, flag, why, "clear the cell or correct the status")
+        elif found is State.MEASURED:
+            changed = Value(said, float(column.number[k]), flag)
+        elif found is State.MISSING or (found is State.REFUSED and said is State.BELOW_LOQ and column.odd[k].is_zero):
+            changed = Value(said, np.nan, flag)
+        elif found is State.REFUSED:
+            continue
+        else:
+            why = f"the status says “{word}”, the cell another limit"
+            changed = Value(State.REFUSED, np.nan, flag, why, "correct the cell or the status")
+        column.put(k, changed)
+
+
+def _treat(
+    series: Sequence[Series],
+    series_of: NDArray[np.intp],
+    specimen: NDArray[np.intp],
+    specimens: Sequence[SpecimenFacts],
+    converter: Converter,
+) -> tuple[list[Treatment], NDArray[np.intp]]:
+    """The treatments of all series in the matrices in which they occur, and which one each cell has."""
+    matrices = list(dict.fromkeys(facts.matrix for facts in specimens)) or [""]
+    code = {matrix: k for k, matrix in enumerate(matrices)}
+    matrix_of = np.array([code[facts.matrix] for facts in specimens], dtype=np.intp)
+    pair = series_of * len(matrices) + (matrix_of[specimen] if len(specimens) else 0)
+    present = np.flatnonzero(np.bincount(pair, minlength=len(series) * len(matrices)))
+    index = np.zeros(len(series) * len(matrices), dtype=np.intp)
+    index[present] = np.arange(len(present))
+    made = [converter.treat(series[p // len(matrices)], matrices[p % len(matrices)]) for p in present.tolist()]
+    return made, index[pair]
+
+
+def _readings(
+    records: Records,
+    kept: NDArray[np.intp],
+    specimen: NDArray[np.intp],
+    values: list[str],
+    column: Column,
+    treatments: list[Treatment],
+    treatment: NDArray[np.intp],
+) -> Readings:
+    def numbers(name: str) -> NDArray[np.float64]:
+        return np.array([getattr(t, name) for t in treatments], dtype=np.float64)[treatment]
+
+    def words(made: list[str], index: NDArray[np.intp]) -> NDArray[np.object_]:
+        return texts(made)[index] if made else texts([])
+
+    fate = np.array([t.fate for t in treatments], dtype=np.int8)[treatment]
+    state, number = column.state.copy(), column.number.copy()
+    is_limit = (state == State.BELOW_LOQ) | (state == State.ABOVE_RANGE)
+    # A limit without a number needs no unit, so a unit that cannot be used takes nothing from it.
+    blocked = (fate != State.MEASURED) & (state != State.MISSING)
+    blocked &= ~((fate == State.REFUSED) & is_limit & np.isnan(number))
+    state[blocked] = fate[blocked]
+    limit = numbers("limit")
+    is_used = fate == State.MEASURED
+    unstated = is_used & (state == State.BELOW_LOQ) & np.isnan(number)
+    number[unstated] = limit[unstated]
+    with np.errstate(invalid="ignore"):
+        under = is_used & (state == State.MEASURED) & (number < limit)
+    state[under], number[under] = State.BELOW_LOQ, limit[under]
+    has_number = is_used & np.isfinite(number) & np.isin(state, (State.MEASURED, State.BELOW_LOQ, State.ABOVE_RANGE))
+    mol_per_l = np.where(has_number, number * numbers("multiplier") / numbers("divisor"), np.nan)
+
+    note = words([t.note for t in treatments], treatment)
+    note[state == State.MISSING] = ""
+    for k in np.flatnonzero(under).tolist():
+        note[k] = "; ".join(n for n in (note[k], _UNDER_LIMIT) if n)
+    note[(state == State.BELOW_LOQ) & ~has_number] = _NO_LIMIT
+    flag = records.flag[kept]
+    for k, value in column.odd.items():
+        if value.flag:
+            flag[k] = " ".join(f for f in (flag[k], value.flag) if f)
+        if value.state is State.REFUSED and state[k] == State.REFUSED:
+            note[k] = value.why
+    basis = words([t.basis for t in treatments], treatment)
+    basis[~has_number] = ""
+    series_of = records.series_of[kept]
+    return Readings(
+        specimen=specimen,
+        analyte=words([t.match.analyte for t in treatments], treatment),
+        name=words([s.name for s in records.series], series_of),
+        value=texts(values),
+        unit=words([s.unit for s in records.series], series_of),
+        flag=flag,
+        state=state,
+        mol_per_l=mol_per_l,
+        sd_ln=np.where(has_number, numbers("sd_ln"), np.nan),
+        sd_is_default=has_number & np.array([t.sd_is_default for t in treatments], dtype=bool)[treatment],
+        shared_sd_ln=np.where(has_number, numbers("shared_sd"), np.nan),
+        basis=basis,
+        row=records.row[kept],
+        column=records.column[kept],
+        note=note,
+    )
+
+
+def _add_status(flag: NDArray[np.object_], status: NDArray[np.object_]) -> None:
+    for k, word in enumerate(status.tolist()):
+        if word and word.casefold() != "ok":
+            flag[k] = " ".join(f for f in (flag[k], word) if f)
