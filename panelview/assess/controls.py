@@ -143,8 +143,8 @@ def robust_limits(values: Array) -> tuple[Array, Array]:
     Source: Horn, Pesce and Copeland (1998); CLSI EP28-A3c. Constants from memory.
     """
     n = np.isfinite(values).sum(axis=0)
-    median = np.nanmedian(values, axis=0)
-    mad = np.maximum(np.nanmedian(np.abs(values - median), axis=0) / 0.6745, _NO_SPREAD)
+    median = _median(values, n)
+    mad = np.maximum(_median(np.abs(values - median), n) / 0.6745, _NO_SPREAD)
     location = median
     for _ in range(100):
         weight = _biweight((values - location) / (3.7 * mad)) ** 2
@@ -157,6 +157,13 @@ def robust_limits(values: Array) -> tuple[Array, Array]:
     of_location = _biweight_spread(values, location, between, 3.7, n) / np.sqrt(n)
     half = t_quantile(0.975, n - 1.0) * np.hypot(between, of_location)
     return location - half, location + half
+
+
+def _median(values: Array, n: NDArray[np.intp]) -> Array:
+    """Median of each column's n numbers, NaN left out (numpy's own brings in its masked arrays)."""
+    ordered = np.sort(values, axis=0)  # NaN last
+    columns = np.arange(values.shape[1])
+    return np.asarray((ordered[(n - 1) // 2, columns] + ordered[n // 2, columns]) / 2)
 
 
 def _biweight(u: Array) -> Array:

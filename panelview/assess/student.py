@@ -48,32 +48,43 @@ def two_sided_p(t: Array, df: Array) -> Array:
 
 
 def t_quantile(p: float, df: Array) -> Array:
-    """Quantile (0.5 < p < 1) of Student's t with df degrees of freedom, ≥ 1."""
-    unique, inverse = np.unique(np.asarray(df, dtype=np.float64), return_inverse=True)
-    found = np.array([_one_quantile(p, float(v)) for v in unique], dtype=np.float64)
+    """Quantile (0.5 < p < 1) of Student's t with df degrees of freedom, whole numbers ≥ 1."""
+    unique, inverse = np.unique(np.asarray(df, dtype=np.int64), return_inverse=True)
+    found = np.array([_one_quantile(p, int(v)) for v in unique], dtype=np.float64)
     return np.asarray(found[inverse].reshape(np.shape(df)), dtype=np.float64)
 
 
 @functools.lru_cache(maxsize=4096)
-def _one_quantile(p: float, df: float) -> float:
+def _one_quantile(p: float, df: int) -> float:
     """Newton's iteration on the two-sided tail in ln t, in which the tail is nearly straight."""
     wanted = math.log(2 * (1 - p))
-    freedom = np.array([df])
-    t = np.array([2.0])
+    t = 2.0
+    log_c = math.lgamma((df + 1) / 2) - math.lgamma(df / 2) - 0.5 * math.log(df * math.pi)
     for _ in range(60):
-        tail = _two_sided_t(t, freedom)
-        slope = -2 * t * _density(t, freedom) / tail
-        step = (wanted - np.log(tail)) / slope
-        t = t * np.exp(np.clip(step, -2.0, 2.0))
-        if abs(step[0]) < 1e-13:
+        tail = 1 - _central_part(t, df)
+        density = math.exp(log_c - (df + 1) / 2 * math.log1p(t * t / df))
+        step = (wanted - math.log(tail)) * tail / (-2 * t * density)
+        t *= math.exp(min(max(step, -2.0), 2.0))
+        if abs(step) < 1e-13:
             break
-    return float(t[0])
+    return t
 
 
-def _density(t: Array, df: Array) -> Array:
-    """Density of Student's t."""
-    log_c = _log_gamma((df + 1) / 2) - _log_gamma(df / 2) - 0.5 * np.log(df * math.pi)
-    return np.asarray(np.exp(log_c - (df + 1) / 2 * np.log1p(t**2 / df)), dtype=np.float64)
+def _central_part(t: float, df: int) -> float:
+    """P(|T| < t) for a whole number of degrees of freedom, in closed form.
+
+    Source: Abramowitz and Stegun (1964), 26.7.3 and 26.7.4.
+    """
+    angle = math.atan(t / math.sqrt(df))
+    cosine = math.cos(angle)
+    is_odd = df % 2 == 1
+    term = total = (cosine if is_odd else 1.0) * (df > 1)
+    for k in range(3 if is_odd else 2, df - 1, 2):
+        term *= cosine * cosine * (k - 1) / k
+        total += term
+    if is_odd:
+        return 2 / math.pi * (angle + math.sin(angle) * total)
+    return math.sin(angle) * total
 
 
 def _two_sided_t(t: Array, df: Array) -> Array:
