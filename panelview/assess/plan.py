@@ -16,13 +16,10 @@ from numpy.typing import NDArray
 
 from panelview.assess.review import StepColumn
 from panelview.assess.settings import FreeRatio
-from panelview.catalogue.couples import RATIO_POOLS, IndicatorCouple
+from panelview.catalogue.couples import COFACTORS, RATIO_POOLS, IndicatorCouple
 from panelview.catalogue.load import Catalogue
 
 Array = NDArray[np.float64]
-
-#: Never read from an extract as free: most of each is bound to protein or in another compartment.
-COFACTORS = frozenset(form for ox, red, _ in RATIO_POOLS.values() for form in (ox, red))
 
 _MATRIX_SIDE = {"mitochondrial_matrix", "mitochondrial_inner_membrane"}
 

@@ -31,6 +31,9 @@ class IndicatorCouple:
     limits: str
     source: str
 
+#: Never read from an extract as free: most of each is bound to protein or in another compartment.
+COFACTORS = frozenset(form for oxidised, reduced, _ in RATIO_POOLS.values() for form in (oxidised, reduced))
+
 
 def pool_name(pool: str) -> tuple[str, str]:
     """A pool id in words: its name and its compartment.

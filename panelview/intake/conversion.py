@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+from panelview.catalogue.couples import COFACTORS
 from panelview.catalogue.load import Catalogue
 from panelview.intake.decimal_marks import Mark, Marks
 from panelview.intake.names import Names
@@ -12,6 +13,9 @@ from panelview.intake.panel import Match, State
 from panelview.intake.records import Series
 from panelview.intake.units import MASS_UNSTATED, Unit, UnknownUnit, read_unit
 from panelview.intake.values import read_value
+
+#: Note on NAD(P)(H) of an extract.
+_TOTAL = "total of the specimen: kept, never read as a free pool"
 
 #: Analytical coefficient of variation where the file states none, printed as a default (common practice for
 #: chromatographic panels, no source).
@@ -132,7 +136,7 @@ class Converter:
         return Treatment(
             match,
             State.MEASURED,
-            "; ".join(scale.notes),
+            "; ".join((*scale.notes, _TOTAL) if match.analyte in COFACTORS else scale.notes),
             multiplier=scale.multiplier,
             divisor=scale.divisor,
             shared_sd=scale.shared_sd,
