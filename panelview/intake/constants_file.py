@@ -73,9 +73,7 @@ def read_own_constants(path: Path, catalogue: Catalogue) -> dict[str, OwnConstan
         if row.get("sd_kj_per_mol", "").strip():
             sd = _number(name, line, "sd_kj_per_mol", row["sd_kj_per_mol"])
             if sd < 0:
-                raise _refused(
-                    name, line, "sd_kj_per_mol", "an uncertainty cannot be negative", "correct the value"
-                )
+                raise _refused(name, line, "sd_kj_per_mol", "an uncertainty cannot be negative", "correct the value")
         own[step] = OwnConstant(
             step_id=step,
             delta_g0_prime=value if has_energy else None,
@@ -91,9 +89,7 @@ def read_at(path: Path) -> list[AtRow]:
     name = path.name
     header, rows = _table(path)
     if "step" not in header and "reaction" not in header:
-        raise _refused(
-            name, 1, "", "the column step (or reaction) is missing", "name a step or a reaction in each row"
-        )
+        raise _refused(name, 1, "", "the column step (or reaction) is missing", "name a step or a reaction in each row")
     made = []
     for line, row in rows:
         conditions = {}
@@ -105,9 +101,7 @@ def read_at(path: Path) -> list[AtRow]:
                 _check(name, line, field, conditions[field])
         step, reaction = row.get("step", "").strip(), row.get("reaction", "").strip()
         if not step and not reaction:
-            raise _refused(
-                name, line, "step", "neither a step nor a reaction is named", "fill in one of the two"
-            )
+            raise _refused(name, line, "step", "neither a step nor a reaction is named", "fill in one of the two")
         made.append(AtRow(line, step, reaction, conditions))
     return made
 
@@ -158,9 +152,7 @@ def _number(name: str, line: int, column: str, text: str) -> float:
     except ValueError:
         value = math.nan
     if not math.isfinite(value):
-        raise _refused(
-            name, line, column, f"“{text.strip()}” is not a number", "write it with a decimal point"
-        )
+        raise _refused(name, line, column, f"“{text.strip()}” is not a number", "write it with a decimal point")
     return value
 
 

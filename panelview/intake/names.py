@@ -43,7 +43,8 @@ class Names:
                 self._sums.add(name.text)
         for metabolite in catalogue.metabolites.values():
             for text, how in ((metabolite.symbol, "abbreviation"), (metabolite.name, "name"), (metabolite.id, "id")):
-                if how == "id" or text not in self._exact:
+                # The table of names goes first: it knows which abbreviations mean two things.
+                if how == "id" or self._exact.get(text, (metabolite.id,)) == (metabolite.id,):
                     self._add(text, (metabolite.id,), how)
         self._masses = {_spelled(n.text, _WIDE): n.molar_mass for n in catalogue.names if n.molar_mass is not None}
         self._cache: dict[str, Match] = {}

@@ -130,12 +130,12 @@ def _delimiter(text: str) -> str:
     """The delimiter that cuts most of the first lines into one and the same number (over one) of cells."""
     head = [line for line in re.split(r"\r\n|\n|\r", text[:65536])[:50] if line.strip()]
     if len(text) > 65536:
-        head = head[:-1] or head  # the last line may be cut short
+        head = head[:-1]  # the last line may be cut short
     best, best_score = ",", (-1.0, 0)
     for delimiter in _DELIMITERS:
         counts = Counter(len(row) for row in csv.reader(head, delimiter=delimiter))
         width, rows = max(counts.items(), key=lambda item: (item[1], item[0]), default=(0, 0))
-        score = (rows / len(head), width)
+        score = (rows / max(len(head), 1), width)
         if width > 1 and score > best_score:
             best, best_score = delimiter, score
     return best

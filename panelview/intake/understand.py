@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -18,6 +18,11 @@ from panelview.intake.values import STATUS_WORDS, Column, Value, read_values
 
 _UNDER_LIMIT = "reported under the limit of quantification, so taken as below it"
 _NO_LIMIT = "below a limit that the file does not state, so nothing can be said of its size"
+_NO_UPPER_LIMIT = "above a limit that the file does not state, so nothing can be said of its size"
+
+#: mol/L: pure water holds 55; under the other, a nanolitre holds no molecule.
+_MOST, _LEAST = 55.5, 1e-15
+
 _LIMIT_SIGNS = ("<", "<=", "≤", ">", ">=", "≥")
 
 
@@ -60,7 +65,7 @@ def understand(records: Records, specimens: Sequence[SpecimenFacts], catalogue: 
     if status is not None:
         _apply_status(status, column)
     treatments, treatment = _treat(records.series, series_of, specimen, specimens, Converter(catalogue, names, marks))
-    readings = _readings(records, kept, specimen, values, column, treatments, treatment)
+    readings = _readings(records, kept, specimen, values, column, _PerCell(treatments, treatment))
     if status is not None:
         _add_status(readings.flag, status)
     replicates = same_text("", len(kept)) if records.replicate is None else records.replicate[kept]
@@ -97,7 +102,7 @@ def _apply_status(status: NDArray[np.object_], column: Column) -> None:
         said, found = meaning[word], State(int(column.state[k]))
         if said is None or said is found:
             continue
-        flag = column.odd[k].flag if k in column.odd else ""
+        flag = column.flag(k)
         if said is State.MISSING:
             why = f"the status says “{word}”, and the cell holds a value"
             changed = Value(State.REFUSED, np.nan, flag, why, "clear the cell or correct the status")
@@ -132,69 +137,101 @@ def _treat(
     return made, index[pair]
 
 
-def _readings(
-    records: Records,
-    kept: NDArray[np.intp],
-    specimen: NDArray[np.intp],
-    values: list[str],
-    column: Column,
-    treatments: list[Treatment],
-    treatment: NDArray[np.intp],
-) -> Readings:
-    def numbers(name: str) -> NDArray[np.float64]:
-        return np.array([getattr(t, name) for t in treatments], dtype=np.float64)[treatment]
+class _PerCell:
+    """What treatments say, spread over their cells."""
 
-    def words(made: list[str], index: NDArray[np.intp]) -> NDArray[np.object_]:
-        return texts(made)[index] if made else texts([])
+    def __init__(self, treatments: Sequence[Treatment], treatment: NDArray[np.intp]) -> None:
+        self._treatments = treatments
+        self._treatment = treatment
 
-    fate = np.array([t.fate for t in treatments], dtype=np.int8)[treatment]
+    def numbers(self, name: str) -> NDArray[np.float64]:
+        return np.array([getattr(t, name) for t in self._treatments], dtype=np.float64)[self._treatment]
+
+    def words(self, of: Callable[[Treatment], str]) -> NDArray[np.object_]:
+        return texts([of(t) for t in self._treatments])[self._treatment]
+
+
+@dataclass
+class _Amounts:
+    """[cell]: states once names, units and limits are known; mol/L of the pool's water, NaN where there is no number;
+    where a value stood under its LLOQ, and was taken as below it."""
+
+    state: NDArray[np.int8]
+    mol_per_l: NDArray[np.float64]
+    under: NDArray[np.bool_]
+
+
+def _amounts(column: Column, per_cell: _PerCell) -> _Amounts:
+    fate = per_cell.numbers("fate").astype(np.int8)
     state, number = column.state.copy(), column.number.copy()
     is_limit = (state == State.BELOW_LOQ) | (state == State.ABOVE_RANGE)
     # A limit without a number needs no unit, so a unit that cannot be used takes nothing from it.
     blocked = (fate != State.MEASURED) & (state != State.MISSING)
     blocked &= ~((fate == State.REFUSED) & is_limit & np.isnan(number))
     state[blocked] = fate[blocked]
-    limit = numbers("limit")
-    is_used = fate == State.MEASURED
+    limit, is_used = per_cell.numbers("limit"), fate == State.MEASURED
     unstated = is_used & (state == State.BELOW_LOQ) & np.isnan(number)
     number[unstated] = limit[unstated]
-    with np.errstate(invalid="ignore"):
-        under = is_used & (state == State.MEASURED) & (number < limit)
+    under = is_used & (state == State.MEASURED) & (number < limit)
     state[under], number[under] = State.BELOW_LOQ, limit[under]
     has_number = is_used & np.isfinite(number) & np.isin(state, (State.MEASURED, State.BELOW_LOQ, State.ABOVE_RANGE))
-    mol_per_l = np.where(has_number, number * numbers("multiplier") / numbers("divisor"), np.nan)
+    with np.errstate(over="ignore", under="ignore"):
+        mol_per_l = np.where(has_number, number * per_cell.numbers("multiplier") / per_cell.numbers("divisor"), np.nan)
+    impossible = has_number & ~((mol_per_l >= _LEAST) & (mol_per_l <= _MOST))
+    for k in np.flatnonzero(impossible).tolist():
+        what = f"{mol_per_l[k]:.2g} mol/L is no concentration that a cell can hold"
+        column.put(k, Value(State.REFUSED, np.nan, column.flag(k), what, "check the value and its unit"))
+    state[impossible], mol_per_l[impossible] = State.REFUSED, np.nan
+    return _Amounts(state, mol_per_l, under & ~impossible)
 
-    note = words([t.note for t in treatments], treatment)
-    note[state == State.MISSING] = ""
-    for k in np.flatnonzero(under).tolist():
-        note[k] = "; ".join(n for n in (note[k], _UNDER_LIMIT) if n)
-    note[(state == State.BELOW_LOQ) & ~has_number] = _NO_LIMIT
+
+def _readings(
+    records: Records,
+    kept: NDArray[np.intp],
+    specimen: NDArray[np.intp],
+    values: list[str],
+    column: Column,
+    per_cell: _PerCell,
+) -> Readings:
+    amounts = _amounts(column, per_cell)
+    has_number = np.isfinite(amounts.mol_per_l)
     flag = records.flag[kept]
-    for k, value in column.odd.items():
-        if value.flag:
-            flag[k] = " ".join(f for f in (flag[k], value.flag) if f)
-        if value.state is State.REFUSED and state[k] == State.REFUSED:
-            note[k] = value.why
-    basis = words([t.basis for t in treatments], treatment)
+    for k in column.odd:
+        flag[k] = " ".join(f for f in (flag[k], column.flag(k)) if f)
+    basis = per_cell.words(lambda t: t.basis)
     basis[~has_number] = ""
     series_of = records.series_of[kept]
     return Readings(
         specimen=specimen,
-        analyte=words([t.match.analyte for t in treatments], treatment),
-        name=words([s.name for s in records.series], series_of),
+        analyte=per_cell.words(lambda t: t.match.analyte),
+        name=texts([s.name for s in records.series])[series_of],
         value=texts(values),
-        unit=words([s.unit for s in records.series], series_of),
+        unit=texts([s.unit for s in records.series])[series_of],
         flag=flag,
-        state=state,
-        mol_per_l=mol_per_l,
-        sd_ln=np.where(has_number, numbers("sd_ln"), np.nan),
-        sd_is_default=has_number & np.array([t.sd_is_default for t in treatments], dtype=bool)[treatment],
-        shared_sd_ln=np.where(has_number, numbers("shared_sd"), np.nan),
+        state=amounts.state,
+        mol_per_l=amounts.mol_per_l,
+        sd_ln=np.where(has_number, per_cell.numbers("sd_ln"), np.nan),
+        sd_is_default=has_number & (per_cell.numbers("sd_is_default") > 0),
+        shared_sd_ln=np.where(has_number, per_cell.numbers("shared_sd"), np.nan),
         basis=basis,
         row=records.row[kept],
         column=records.column[kept],
-        note=note,
+        note=_notes(amounts, column, per_cell),
     )
+
+
+def _notes(amounts: _Amounts, column: Column, per_cell: _PerCell) -> NDArray[np.object_]:
+    note = per_cell.words(lambda t: t.note)
+    state, has_number = amounts.state, np.isfinite(amounts.mol_per_l)
+    note[state == State.MISSING] = ""
+    note[(state == State.BELOW_LOQ) & ~has_number] = _NO_LIMIT
+    note[(state == State.ABOVE_RANGE) & ~has_number] = _NO_UPPER_LIMIT
+    for k in np.flatnonzero(amounts.under).tolist():
+        note[k] = "; ".join(n for n in (note[k], _UNDER_LIMIT) if n)
+    for k, value in column.odd.items():
+        if value.state is State.REFUSED and state[k] == State.REFUSED:
+            note[k] = value.why
+    return note
 
 
 def _add_status(flag: NDArray[np.object_], status: NDArray[np.object_]) -> None:

@@ -164,6 +164,10 @@ class Column:
     number: NDArray[np.float64]
     odd: dict[int, Value] = field(default_factory=dict)
 
+    def flag(self, k: int) -> str:
+        """The flags that were taken off cell k."""
+        return self.odd[k].flag if k in self.odd else ""
+
     def put(self, k: int, value: Value) -> None:
         """Replace what cell k was understood as."""
         self.state[k], self.number[k], self.odd[k] = value.state, value.number, value
