@@ -36,6 +36,9 @@ from panelview.output.text import quantity_name, shown_id, state_interval, state
 
 Index = QModelIndex | QPersistentModelIndex
 
+#: So many rows decide the width of a column.
+_LOOKED_AT = 60
+
 STATE_HEADINGS = ("Quantity", "Compartment", "From", "Value", "95 % interval", "Validity", "What to know")
 
 
@@ -136,15 +139,16 @@ class TextTableView(QTableView):
         self._fit()
 
     def _fit(self) -> None:
-        """Widths from the first rows' texts, no column wider than a third of the table."""
+        """Widths from the first rows' texts, no column wider than a third of the table. (The view's own way
+        asks the model many times a cell.)"""
         if not self.texts.rows or not self.isVisible():
             return
-        header = self.horizontalHeader()
-        header.setResizeContentsPrecision(60)
-        self.resizeColumnsToContents()
+        metrics = self.fontMetrics()
         widest = max(self.viewport().width() // 3, 120)
+        lines = [self.texts.headings, *self.texts.rows[:_LOOKED_AT]]
         for column in range(self.texts.columnCount() - 1):
-            self.setColumnWidth(column, min(self.columnWidth(column) + 8, widest))
+            width = max(metrics.horizontalAdvance(line[column]) for line in lines)
+            self.setColumnWidth(column, min(width + 20, widest))
 
 
 class BelowView(QTabWidget):

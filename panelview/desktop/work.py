@@ -1,4 +1,4 @@
-"""Long work off the GUI thread: one helper, cancel by token, results delivered on the GUI thread."""
+"""Long work off the GUI thread: one way to run it, cancel by token, results delivered on the GUI thread."""
 
 from __future__ import annotations
 
