@@ -36,6 +36,8 @@ _READ_AS = {
     "platelet_or_pbmc": "lymphocyte lymphocytes leukocytes leucocytes",
     "cultured_cells": "fibroblast fibroblasts skinfibroblast skinfibroblasts myoblasts myotubes lymphoblasts",
 }
+#: Words that say no more than “a specimen” (exports of instruments).
+_NO_MATRIX = frozenset("na|nan|none|null|unknown|unk|sample|specimen|studysample|notstated".split("|"))
 _MATRIX_OF = {
     word: matrix for table in (_SAME_AS, _READ_AS) for matrix, words in table.items() for word in words.split()
 }
@@ -69,7 +71,7 @@ class MatrixWord:
 def matrix_of(text: str, catalogue: Catalogue) -> MatrixWord:
     """The matrix a word means; "" for a blank cell. Raises UnreadableFact."""
     word = re.sub(r"[\s_\-/().,]", "", text.strip().casefold())
-    if not word or word in ("na", "nan", "none", "null"):
+    if not word or word in _NO_MATRIX:
         return MatrixWord("")
     if text.strip() in catalogue.matrices:
         return MatrixWord(text.strip())

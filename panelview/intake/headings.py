@@ -10,7 +10,8 @@ from panelview.intake.units import UnknownUnit, read_unit
 _FIELDS: dict[str, str] = {
     "specimen": "specimen specimenid specimencode sample sampleid samplename samplecode probe probenid probennummer "
     "tube tubeid code id echantillon échantillon muestra campione",
-    "participant": "participant participantid subject subjectid patientcode proband pseudonym",
+    "participant": "participant participantid participantcode subject subjectid subjectcode patientid patientcode "
+    "proband pseudonym",
     "group": "group gruppe cohort groupe grupo gruppo arm class",
     "matrix": "matrix specimentype sampletype material tissue probenmaterial",
     "collected": "collected collectiontime collectiondate time date datetime drawn collecteddatetime entnahme datum",
@@ -37,8 +38,18 @@ _OWN_HEADING = {"temperature": "temperature_c", "ionic_strength": "ionic_strengt
 #: Columns that carry nothing the program reads, and are passed over without a word.
 _IDLE = frozenset("hmdb hmdbid method chebi kegg lab laboratory instrument batch comment comments".split())
 
+#: Columns that say who somebody is: not analytes, and not kept, so that no output can carry them.
+_PERSONAL = frozenset(
+    "age alter sex gender geschlecht birthdate birthday dateofbirth dob geburtsdatum patient patientname surname "
+    "lastname firstname forename vorname nachname mrn hospitalnumber height weight bmi".split()
+)
+
 _PUNCTUATION = re.compile(r"[\s_\-.()\[\]°/]")
 _SUFFIX = re.compile(r"(?P<name>.*[^\s_,])[ _,]\s*(?P<unit>[munpµμ]?(?:M|[mM]ol(?:/|_per_|_)\S+|g(?:/|_per_|_)\S+))\Z")
+
+
+#: What may stand between a name and its unit.
+_BETWEEN = " ,_:/-–"
 
 
 def _plain(heading: str) -> str:
@@ -65,6 +76,11 @@ def is_idle(heading: str) -> bool:
     return _plain(heading) in _IDLE
 
 
+def is_personal(heading: str) -> bool:
+    """Whether a column of this heading describes a person; it is told as not read, and nothing of it is kept."""
+    return _plain(heading) in _PERSONAL
+
+
 def split_unit(heading: str) -> tuple[str, str]:
     """Name and unit of `Lactate (mmol/L)`, `lactate [umol/L]`, `Lac_uM`; unit "" where none is written.
 
@@ -73,12 +89,12 @@ def split_unit(heading: str) -> tuple[str, str]:
     text = heading.strip()
     bracket = _last_bracket(text)
     if bracket > 0 and _looks_like_unit(text[bracket + 1 : -1]):
-        return text[:bracket].strip(" ,_"), text[bracket + 1 : -1].strip()
+        return text[:bracket].strip(_BETWEEN), text[bracket + 1 : -1].strip().removeprefix("in ")
     suffix = _SUFFIX.match(text) if len(text) <= 200 else None
     if suffix:
         unit = suffix["unit"].replace("_per_", "/").replace("_", "/", 1)
         if _looks_like_unit(unit):
-            return suffix["name"].strip(" ,_"), unit
+            return suffix["name"].strip(_BETWEEN), unit
     return text, ""
 
 
@@ -97,7 +113,7 @@ def _last_bracket(text: str) -> int:
 def _looks_like_unit(text: str) -> bool:
     """Known, or refused for what it means (percent, ratio: the reason is worth telling), or of a unit's shape."""
     try:
-        read_unit(text)
+        read_unit(text.strip().removeprefix("in "))
     except UnknownUnit as error:
         return error.is_known or bool(re.fullmatch(r"\s*[munpµμ]?(?:mol|g|l|L|U)\s*/.{1,40}", text))
     return True

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from panelview.intake.headings import is_idle, split_unit
+from panelview.intake.headings import is_idle, is_personal, split_unit
 from panelview.intake.names import Names
 from panelview.intake.problems import Problem, Severity
 from panelview.intake.records import METADATA, Records, Series, Statement, same_text, stripped, texts
@@ -58,12 +58,11 @@ class Table:
         self.problems.append(Problem(severity, self.grid.source.name, row, column, what, remedy))
 
     def not_read(self, k: int) -> None:
-        self.note(
-            self.grid.lines[0],
-            self.heading[k] or str(k + 1),
-            "this column is not read",
-            "rename it if it holds something of the panel",
-        )
+        what, remedy = "this column is not read", "rename it if it holds something of the panel"
+        if is_personal(self.heading[k]):
+            what = "this column describes a person, so it is not read and nothing of it is kept"
+            remedy = "nothing need be done; head it participant if it holds codes that name nobody"
+        self.note(self.grid.lines[0], self.heading[k] or str(k + 1), what, remedy)
 
     @property
     def columns(self) -> dict[str, str]:
@@ -190,7 +189,7 @@ def _is_analyte_column(table: Table, k: int, cells: Sequence[str]) -> bool:
     field, h = table.fields[k], table.heading[k]
     if field in METADATA or field in ("flag", "replicate", "specimen") or k in table.second.values():
         return False
-    if field in _LONG_ONLY or is_idle(h):
+    if field in _LONG_ONLY or is_idle(h) or is_personal(h):
         if field != "ignored":
             table.not_read(k)
         return False

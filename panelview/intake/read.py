@@ -11,6 +11,7 @@ from panelview.catalogue.load import Catalogue
 from panelview.intake.facts import UnreadableFact, matrix_of
 from panelview.intake.names import Names
 from panelview.intake.panel import Panel
+from panelview.intake.plausibility import far_from_published
 from panelview.intake.problems import InputRefused, Problem, Severity
 from panelview.intake.records import Records
 from panelview.intake.repeats import joined, settle_repeats
@@ -62,10 +63,7 @@ def _names_of(catalogue: Catalogue) -> Names:
 
 def _records(name: str, data: bytes, names: Names) -> Records:
     """The records of one file. A reader of another format joins here. Raises InputRefused."""
-    grid = read_grid(name, data)
-    records = shape(grid, names)
-    records.problems[:0] = grid.problems
-    return records
+    return shape(read_grid(name, data), names)
 
 
 def _panel(files: list[Records], catalogue: Catalogue, names: Names, matrix: str | None) -> Panel:
@@ -81,6 +79,7 @@ def _panel(files: list[Records], catalogue: Catalogue, names: Names, matrix: str
     understood = [understand(records, facts, catalogue, names) for records in files]
     for records, made in zip(files, understood, strict=True):
         problems += problems_of(records.source.name, made, facts)
+        problems += far_from_published(records.source.name, made, facts, catalogue)
     readings = joined([made.readings for made in understood])
     problems += settle_repeats(
         readings,

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from panelview.intake.heading_row import from_heading, is_analyte
 from panelview.intake.headings import field_of, is_idle, is_own_heading, own_heading, split_unit
 from panelview.intake.layouts import Table, analytes_in_rows, long, wide
 from panelview.intake.names import Names
@@ -15,10 +16,12 @@ _LOOKED_AT = 300
 
 def shape(grid: Grid, names: Names) -> Records:
     """Find the shape of a grid and take it apart. Raises InputRefused."""
+    if len(grid.rows[0]) < 2:
+        what = "the table has a single column"
+        raise refused(grid.source.name, grid.lines[0], "", what, "export it with one column a field")
+    grid = from_heading(grid, names)
     name, line = grid.source.name, grid.lines[0]
     heading = [h.strip() for h in grid.rows[0]]
-    if len(heading) < 2:
-        raise refused(name, line, "", "the table has a single column", "export it with one column a field")
     if len(grid.rows) < 2:
         raise refused(name, line, "", "the table has a heading and no rows", "export the panel again")
     _refuse_twins(grid, heading)
@@ -27,7 +30,7 @@ def shape(grid: Grid, names: Names) -> Records:
     if "specimen" in fields and "analyte" in fields:
         if "value" in fields:
             return long(table)
-        if not any(_is_analyte(h, names) for h in heading):
+        if not any(is_analyte(h, names) for h in heading):
             what = "there are columns of specimens and analytes, and none of values"
             raise refused(name, line, "", what, "head the column of values with value")
     if "specimen" in fields:
@@ -53,7 +56,7 @@ def _with_fields(grid: Grid, heading: list[str]) -> Table:
             name, unit = split_unit(h)
             if unit and field_of(name) == "value":
                 fields[k], heading_unit = "value", unit
-    problems: list[Problem] = []
+    problems = list(grid.problems)
     second: dict[str, int] = {}
     for field in dict.fromkeys(f for f in fields if f):
         at = [k for k, f in enumerate(fields) if f == field]
@@ -85,8 +88,8 @@ def _by_content(table: Table, names: Names) -> Records:
     """A table none of whose headings means the specimens: told by where the names of analytes are."""
     grid, heading, fields = table.grid, table.heading, table.fields
     analyte = fields.index("analyte") if "analyte" in fields[:2] else 0
-    in_heading = sum(_is_analyte(h, names) for h in heading[1:_LOOKED_AT])
-    in_rows = sum(_is_analyte(row[analyte], names) for row in grid.rows[1:_LOOKED_AT])
+    in_heading = sum(is_analyte(h, names) for h in heading[1:_LOOKED_AT])
+    in_rows = sum(is_analyte(row[analyte], names) for row in grid.rows[1:_LOOKED_AT])
     if in_rows and in_rows >= in_heading:
         fields[analyte] = "analyte"
         return analytes_in_rows(table, names)
@@ -110,7 +113,3 @@ def _by_content(table: Table, names: Names) -> Records:
         "head the column of specimen codes with specimen, and one column each for analyte, value and unit, "
         "or one column an analyte",
     )
-
-
-def _is_analyte(text: str, names: Names) -> bool:
-    return not field_of(text) and (names.knows(text) or names.knows(split_unit(text)[0]))

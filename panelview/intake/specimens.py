@@ -10,11 +10,15 @@ import numpy as np
 
 from panelview.catalogue.load import Catalogue
 from panelview.intake.facts import MatrixWord, UnreadableFact, condition_of, matrix_of
+from panelview.intake.not_specimens import not_a_specimen
 from panelview.intake.panel import SpecimenFacts
 from panelview.intake.problems import Problem, Severity
 from panelview.intake.records import METADATA, Records, Statement
 
 _CONDITIONS = ("ph", "temperature", "ionic_strength", "pmg")
+
+#: What to do about a row that holds nothing but a code.
+_NOTHING = "nothing need be done if it is a remark; otherwise fill in its values"
 
 
 @dataclass
@@ -49,22 +53,25 @@ def gather(files: Sequence[Records], catalogue: Catalogue, matrix: str | None) -
     """The facts of every specimen. matrix: id for specimens of which no file states one."""
     made = Specimens()
     by_code: defaultdict[str, list[tuple[Records, Statement]]] = defaultdict(list)
-    cells: Counter[str] = Counter()
+    filled: Counter[str] = Counter()
     for records in files:
         for statement in records.statements:
             by_code[statement.code].append((records, statement))
-        counted = np.bincount(records.specimen, minlength=len(records.codes)).tolist()
-        cells.update({code: counted[k] for k, code in enumerate(records.codes)})
+        counted = np.bincount(records.specimen[records.value != ""], minlength=len(records.codes)).tolist()
+        filled.update({code: counted[k] for k, code in enumerate(records.codes)})
     for records, statement in by_code.pop("", []):
         _leave_out_nameless(made, records, statement)
     reader = _Reader(catalogue, made)
     unstated: list[str] = []
     for code, statements in by_code.items():
         try:
+            _check_kind(code, statements)
             said = reader.read(code, statements)
+            if not said and not filled[code]:
+                _check_row(code, *statements[0])
         except _Refused as error:
-            count = cells[code]
-            what = f"{error.what}, so this specimen is left out ({count} value{'s' if count != 1 else ''})"
+            count = filled[code]
+            what = f"{error.what}, so {_short(code)} is left out ({count} value{'s' if count != 1 else ''})"
             made.problems.append(
                 Problem(Severity.SPECIMEN, error.file, error.row, error.column, what, error.remedy, code)
             )
@@ -78,8 +85,35 @@ def gather(files: Sequence[Records], catalogue: Catalogue, matrix: str | None) -
     return made
 
 
+def _check_kind(code: str, statements: list[tuple[Records, Statement]]) -> None:
+    """Raise _Refused for a row that says it is no specimen, by its code or in a column of groups or matrices."""
+    for records, statement in statements:
+        for name, text in (("specimen", code), *((n, statement.facts.get(n, "")) for n in ("group", "matrix"))):
+            kind = "the heading" if text and text == records.columns.get(name) else not_a_specimen(text)
+            if kind:
+                what = f"“{_short(text)}” names {kind}, not a specimen"
+                remedy = "nothing need be done if so; otherwise give it another word"
+                column = records.columns.get(name, code)
+                raise _Refused(records.source.name, statement.row, column, what, remedy)
+
+
+def _check_row(code: str, records: Records, statement: Statement) -> None:
+    """Raise _Refused for a row of a wide table that holds nothing but a first cell: a footnote, mostly."""
+    if "specimen" in records.columns and "analyte" not in records.columns:
+        what = f"nothing but “{_short(code)}” stands in this row"
+        raise _Refused(records.source.name, statement.row, records.columns["specimen"], what, _NOTHING)
+
+
+def _column(records: Records, name: str) -> str:
+    return records.columns.get(name, name)
+
+
+def _short(text: str) -> str:
+    return text if len(text) <= 40 else text[:37] + "…"
+
+
 def _leave_out_nameless(made: Specimens, records: Records, statement: Statement) -> None:
-    column = records.columns.get("specimen", "specimen")
+    column = _column(records, "specimen")
     what = "no specimen is named in this row, so it is left out"
     made.problems.append(
         Problem(Severity.SPECIMEN, records.source.name, statement.row, column, what, "fill in its code")
@@ -147,11 +181,11 @@ class _Reader:
                 said = _Said(value, records.source.name, statement.row)
                 earlier = known.setdefault(name, said)
                 if earlier is not said and not _agree(name, earlier.value, value):
-                    self._contradict(code, records.columns.get(name, name), earlier, said)
+                    self._contradict(code, _column(records, name), earlier, said)
         return known
 
     def _value(self, name: str, text: str, records: Records, statement: Statement) -> str | float | None:
-        file, column = records.source.name, records.columns.get(name, name)
+        file, column = records.source.name, _column(records, name)
         try:
             if name in _CONDITIONS:
                 if (name, text) not in self._conditions:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import csv
 import hashlib
 import io
+import itertools
 import re
 import stat
 from collections import Counter
@@ -19,6 +20,10 @@ LARGEST_FILE = 200 * 1024 * 1024
 
 #: A table wider than this is no panel.
 MOST_COLUMNS = 5000
+
+#: So many first rows tell how wide the table is; so many lines may stand above the heading.
+_LOOKED_AT = 50
+MOST_ABOVE = 20
 
 #: Where two delimiters cut equally well, the first wins: a comma is a decimal mark as well.
 _DELIMITERS = {"\t": "tab", ";": "semicolon", "|": "bar", ",": "comma"}
@@ -46,13 +51,17 @@ _CONTROL = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]")
 @dataclass(frozen=True)
 class Grid:
     """A table as text: rows[k] are the cells of the row that starts on line lines[k] (1-based); all rows
-    have one width and at least one cell that is not blank."""
+    have one width and at least one cell that is not blank.
+
+    above: (line, cells) of rows at the top that are narrower than the table: a title, or a heading that does not fit.
+    """
 
     source: SourceFile
     rows: list[list[str]]
     lines: list[int]
     layout: str
     problems: tuple[Problem, ...]
+    above: tuple[tuple[int, list[str]], ...] = ()
 
 
 def read_file(path: Path) -> bytes:
@@ -96,7 +105,10 @@ def read_grid(name: str, data: bytes) -> Grid:
             raise refused(name, 0, "", f"the file is {what}, which is not read yet", remedy)
     delimiter = _delimiter(text)
     rows, lines = _rows(name, text, delimiter)
-    return Grid(source, rows, lines, f"{_DELIMITERS[delimiter]}-separated, {encoding}", problems)
+    top = _top(rows)
+    _make_even(name, rows, lines, top)
+    above = tuple(zip(lines[:top], rows[:top], strict=True))
+    return Grid(source, rows[top:], lines[top:], f"{_DELIMITERS[delimiter]}-separated, {encoding}", problems, above)
 
 
 def refused(name: str, row: int, column: str, what: str, remedy: str) -> InputRefused:
@@ -127,31 +139,35 @@ def _decode(name: str, data: bytes) -> tuple[str, str, tuple[Problem, ...]]:
 
 
 def _delimiter(text: str) -> str:
-    """The delimiter that cuts most of the first lines into one and the same number (over one) of cells."""
-    head = [line for line in re.split(r"\r\n|\n|\r", text[:65536])[:50] if line.strip()]
-    if len(text) > 65536:
-        head = head[:-1]  # the last line may be cut short
-    best, best_score = ",", (-1.0, 0)
+    """The delimiter that cuts the first rows without a fault, most of them into one number (over one) of cells."""
+    head = text[:65536]
+    best, best_score = ",", (False, -1.0, 0)
     for delimiter in _DELIMITERS:
-        counts = Counter(len(row) for row in csv.reader(head, delimiter=delimiter))
-        width, rows = max(counts.items(), key=lambda item: (item[1], item[0]), default=(0, 0))
-        score = (rows / max(len(head), 1), width)
+        widths: list[int] = []
+        is_whole = True
+        reader = csv.reader(io.StringIO(head, newline=""), delimiter=delimiter, strict=True)
+        try:
+            widths.extend(len(row) for row in itertools.islice(reader, 50) if any(map(str.strip, row)))
+        except csv.Error:
+            is_whole = len(head) < len(text)  # where the head is cut short, a quote may stand open
+        if len(head) < len(text) and len(widths) > 1 and len(widths) < 50:
+            widths.pop()  # cut short
+        width, rows = max(Counter(widths).items(), key=lambda item: (item[1], item[0]), default=(0, 0))
+        score = (is_whole, rows / max(len(widths), 1), width)
         if width > 1 and score > best_score:
             best, best_score = delimiter, score
     return best
 
 
 def _rows(name: str, text: str, delimiter: str) -> tuple[list[list[str]], list[int]]:
+    """The rows that are not blank, and the lines on which they start."""
     reader = csv.reader(io.StringIO(text, newline=""), delimiter=delimiter, strict=True)
     rows: list[list[str]] = []
     lines: list[int] = []
-    width, line = 0, 1
+    line = 1
     try:
         for cells in reader:
             if any(map(str.strip, cells)):
-                width = width or len(cells)
-                if len(cells) != width:
-                    _even(name, line, cells, width, first=lines[0], is_second=len(rows) == 1)
                 rows.append(cells)
                 lines.append(line)
             line = reader.line_num + 1
@@ -160,19 +176,32 @@ def _rows(name: str, text: str, delimiter: str) -> tuple[list[list[str]], list[i
         raise refused(name, line, "", what, "check this line for an open quote") from error
     if not rows:
         raise refused(name, 0, "", "the file holds no text", "export the panel again")
-    if width > MOST_COLUMNS:
-        what = f"the table has {width:,} columns, more than the {MOST_COLUMNS:,} that are read"
-        raise refused(name, lines[0], "", what, "export fewer columns, or one value a row")
     return rows, lines
 
 
-def _even(name: str, line: int, cells: list[str], width: int, *, first: int, is_second: bool) -> None:
-    """Cut blank cells off the end of a row that is too long; raise InputRefused for any other width."""
-    if width == 1 and is_second:
-        what, remedy = "the first line holds a single cell, so it is no heading", "remove the lines above the heading"
-        raise refused(name, first, "", what, remedy)
-    if len(cells) < width or any(map(str.strip, cells[width:])):
-        what = f"this line has {len(cells)} cells, the heading has {width}"
-        remedy = "make them equal (a decimal comma in a comma-separated file needs quotes)"
-        raise refused(name, line, "", what, remedy)
-    del cells[width:]
+def _top(rows: list[list[str]]) -> int:
+    """Index of the first row that is as wide as most are; 0 where none of the first rows is."""
+    widths = Counter(len(cells) for cells in rows[:_LOOKED_AT] if len(cells) > 1)
+    usual = widths.most_common(1)[0][0] if widths else 1
+    return next((k for k, cells in enumerate(rows[: MOST_ABOVE + 1]) if len(cells) >= usual), 0)
+
+
+def _make_even(name: str, rows: list[list[str]], lines: list[int], top: int) -> None:
+    """Cut blank cells off the end of rows that are too long; raise InputRefused for any other width."""
+    width = len(rows[top])
+    if width > MOST_COLUMNS:
+        what = f"the table has {width:,} columns, more than the {MOST_COLUMNS:,} that are read"
+        raise refused(name, lines[top], "", what, "export fewer columns, or one value a row")
+    for k in range(top + 1, len(rows)):
+        cells = rows[k]
+        if len(cells) != width:
+            if len(cells) < width or any(map(str.strip, cells[width:])):
+                raise uneven(name, lines[k], len(cells), width)
+            del cells[width:]
+
+
+def uneven(name: str, line: int, cells: int, width: int) -> InputRefused:
+    """The refusal of a file one of whose rows does not fit its heading."""
+    what = f"this line has {cells} cell{'s' if cells != 1 else ''}, the heading has {width}"
+    remedy = "make them equal (a decimal comma in a comma-separated file needs quotes)"
+    return refused(name, line, "", what, remedy)

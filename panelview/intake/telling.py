@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections import Counter
+from collections import Counter, defaultdict
+from collections.abc import Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,6 +16,9 @@ from panelview.intake.values import AMBIGUOUS_WORDS
 
 #: Refused cells of one series that are told one by one; the rest are counted, and stand in intake.csv.
 _TOLD_SINGLY = 20
+
+#: Analytes that are named where something is true of several.
+_NAMED = 5
 
 
 def problems_of(file: str, made: Understood, specimens: tuple[SpecimenFacts, ...]) -> list[Problem]:
@@ -68,11 +72,13 @@ class _Teller:
         first, count, one_specimen = self._spread(made.treatment, len(made.treatments))
         told: Counter[tuple[str, str]] = Counter()
         place: dict[tuple[str, str], int] = {}
+        names: defaultdict[tuple[str, str], dict[str, None]] = defaultdict(dict)
         for t, treatment in enumerate(made.treatments):
             key = (treatment.note, treatment.remedy)
             if treatment.fate is not State.MEASURED:
                 told[key] += int(count[t])
                 place.setdefault(key, t)
+                names[key][treatment.match.written] = None
             for assumed in treatment.assumed if count[t] else ():
                 if (assumed.what, "") not in place:
                     place[assumed.what, ""] = t
@@ -85,7 +91,7 @@ class _Teller:
             )
             severity = Severity.NOTE if is_known or not cells else Severity.VALUE
             specimen = self._code(int(first[t])) if one_specimen[t] and cells == count[t] else ""
-            self._tell(severity, int(first[t]), key[0] + _more(cells), key[1], specimen)
+            self._tell(severity, int(first[t]), key[0] + _more(cells, list(names[key])), key[1], specimen)
 
     def _spread(
         self, treatment: NDArray[np.intp], length: int
@@ -145,5 +151,11 @@ class _Teller:
             self._tell(Severity.NOTE, -1, what, "add a cv_percent column, or a CV row below the heading")
 
 
-def _more(count: int) -> str:
-    return f" ({count} values)" if count > 1 else ""
+def _more(count: int, names: Sequence[str] = ()) -> str:
+    """How many values something is true of, and of which analytes where of several."""
+    if count < 2:
+        return ""
+    if len(names) < 2:
+        return f" ({count} values)"
+    others = f" and {len(names) - _NAMED} more" if len(names) > _NAMED else ""
+    return f" ({count} values: {', '.join(n[:40] for n in names[:_NAMED])}{others})"

@@ -130,6 +130,15 @@ def read_unit(text: str) -> Unit:
     return Unit(exponent + per, is_mass, basis, matrix)
 
 
+def is_unit(text: str) -> bool:
+    """Whether the text is a unit, be it one that is refused for what it means."""
+    try:
+        read_unit(text)
+    except UnknownUnit as error:
+        return error.is_known
+    return True
+
+
 def _unknown(text: str) -> UnknownUnit:
     what = f"the unit “{text.strip()}” is not known" if len(text) <= _LONGEST else "this unit is not known"
     return UnknownUnit(text, what, "write it as mmol/L, µmol/L, mg/dL, µmol/g wet weight …")
@@ -143,6 +152,7 @@ def _plain(text: str) -> str:
     made = re.sub(r"\s*\bper\b\s*", "/", made, flags=re.IGNORECASE)
     made = re.sub(r"[·.\s]*([dcmun]?[lL]|[kmun]?g)\s*\^?-1", r"/\1", made)
     made = re.sub(r"mcmol|micromol", "umol", made, flags=re.IGNORECASE)
+    made = re.sub(r"lit(?:re|er)s?", "L", made, flags=re.IGNORECASE)
     made = re.sub(r"millimol", "mmol", made, flags=re.IGNORECASE)
     made = re.sub(r"nanomol", "nmol", made, flags=re.IGNORECASE)
     made = re.sub(r"\bmcg\b", "ug", made)

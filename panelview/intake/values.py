@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 
 from panelview.intake.decimal_marks import Mark, Marks, proven_mark, without_group_blanks
 from panelview.intake.panel import State
+from panelview.intake.units import is_unit
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,9 +61,10 @@ STATUS_WORDS: dict[str, State] = {
 }
 
 _NUMBER = re.compile(r"[+-]?(?:[0-9][0-9.,]*|[.,][0-9]+)(?:[eE][+-]?[0-9]+)?\Z")
+_WITH_UNIT = re.compile(r"[+-]?[0-9.,]*[0-9](?:[eE][+-]?[0-9]+)?\s*([^0-9\s.,+-].*)\Z")
 _LIMIT = re.compile(r"(<=|>=|=<|=>|<|>|≤|≥)\s*")
 _SIGNS = "*#†‡↑↓!"
-_FLAG_WORD = re.compile(r"(?<![A-Za-z])\(?(?:HH|LL|AA|H|L|A)\)?\Z")
+_FLAG_WORD = re.compile(r"(?<![A-Za-z/])\(?(?:HH|LL|AA|H|L|A)\)?\Z")
 _LEADING_FLAG = re.compile(r"(?:HH|LL|AA|H|L|A)\s+(?=[<>≤≥0-9.,+-])")
 _SAME = str.maketrans({"\u00a0": " ", "\u202f": " ", "\u2009": " ", "−": "-", "－": "-", "\ufeff": None})
 
@@ -116,7 +118,7 @@ def _number(text: str, marks: Marks, state: State, flag: str, cell: str) -> Valu
     shown = cell.strip() if len(cell) <= 60 else cell.strip()[:57] + "…"
     digits = without_group_blanks(text)
     if len(text) > 60 or not _NUMBER.match(digits):
-        return _refused(flag, f"“{shown}” is not a number", "correct the cell or leave it blank")
+        return _no_number(text, shown, flag)
     mark = marks.mark
     plain = _plain(digits, mark)
     if plain is None:
@@ -139,6 +141,14 @@ def _number(text: str, marks: Marks, state: State, flag: str, cell: str) -> Valu
         why = f"{what} is not a concentration"
         return Value(State.REFUSED, math.nan, flag, why, remedy, is_zero=number == 0)
     return Value(state, number, flag, has_thousands=has_thousands)
+
+
+def _no_number(text: str, shown: str, flag: str) -> Value:
+    words = _WITH_UNIT.match(text) if len(text) <= 60 else None
+    if words and is_unit(words[1]):
+        why = f"“{shown}” holds a unit beside the number"
+        return _refused(flag, why, "write the number alone, and the unit in the heading or in a column of units")
+    return _refused(flag, f"“{shown}” is not a number", "correct the cell or leave it blank")
 
 
 def _plain(text: str, mark: Mark) -> str | None:

@@ -168,7 +168,7 @@ class TestInAFile:
         ]
 
     def test_text_in_an_unmatched_column_is_one_problem_not_many(self, catalogue):
-        panel = read(catalogue, "specimen,matrix,lactate (mM),sex\nA,plasma,1,f\nB,plasma,2,m\n")
+        panel = read(catalogue, "specimen,matrix,lactate (mM),diet\nA,plasma,1,f\nB,plasma,2,m\n")
         assert [r.state for r in seen(panel)] == [State.MEASURED, State.UNMATCHED] * 2
         (problem,) = problems(panel)
-        assert problem.column == "sex"
+        assert problem.column == "diet"

@@ -6,6 +6,7 @@ import gzip
 import os
 import sqlite3
 import zipfile
+from pathlib import Path
 
 import pytest
 from hypothesis import given
@@ -91,10 +92,13 @@ class TestRows:
         assert "the heading has 2" in problem.what
         assert "decimal comma" in problem.remedy
 
-    def test_a_title_above_the_heading_is_told_as_that(self):
-        problem = refused_as(b"Panel of 3 March\nsample,x\nA,1\nB,2\n")
-        assert problem.row == 1
-        assert problem.remedy == "remove the lines above the heading"
+    def test_narrow_lines_above_the_table_are_kept_apart_with_their_lines(self):
+        grid = read_grid("p.csv", b"Panel of 3 March\n\nLab,X\nsample,x,y\nA,1,2\nB,2,3\n")
+        assert grid.above == ((1, ["Panel of 3 March"]), (3, ["Lab", "X"]))
+        assert (grid.rows[0], grid.lines) == (["sample", "x", "y"], [4, 5, 6])
+
+    def test_a_table_without_lines_above_it_has_none(self):
+        assert read_grid("p.csv", b"sample,x\nA,1\n").above == ()
 
     def test_an_open_quote_is_refused_by_the_line_where_it_opens(self):
         problem = refused_as(b'sample,x\nA,"1\nB,2\n')
@@ -179,12 +183,17 @@ class TestFiles:
     def test_a_name_that_no_file_can_have(self, tmp_path):
         assert self.refusal(tmp_path / "a\x00b").what
 
-    @pytest.mark.skipif(not hasattr(os, "geteuid") or os.geteuid() == 0, reason="root may read everything")
-    def test_a_file_that_may_not_be_read(self, tmp_path):
+    def test_a_file_that_may_not_be_read(self, tmp_path, monkeypatch):
         path = tmp_path / "secret.csv"
         path.write_text(TEXT)
-        path.chmod(0)
-        assert "cannot be read" in self.refusal(path).what
+
+        def denied(_: Path) -> bytes:
+            raise PermissionError(13, "Permission denied")
+
+        monkeypatch.setattr(Path, "read_bytes", denied)
+        problem = self.refusal(path)
+        assert "cannot be read (Permission denied)" in problem.what
+        assert "permissions" in problem.remedy
 
 
 @given(st.binary(max_size=300))
