@@ -18,37 +18,50 @@ _FAR = 100.0
 def far_from_published(
     file: str, made: Understood, specimens: Sequence[SpecimenFacts], catalogue: Catalogue
 ) -> list[Problem]:
-    """A note for each series of one file that holds values over 100-fold off the published concentration."""
+    """A note for each series of one file with values over 100-fold off every published concentration of the matrix.
+
+    All published sets count, fasting, exercise and disease among them, because a value that one of them explains needs
+    no other explanation.
+    """
     readings = made.readings
-    usual = {(p.metabolite_id, p.matrix_id): p.ln_mean for p in catalogue.published if p.is_default}
     cells = np.flatnonzero((readings.state == State.MEASURED) & np.isfinite(readings.mol_per_l))
     first = dict(zip(made.treatment[cells[::-1]].tolist(), cells[::-1].tolist(), strict=True))
-    matrix_of = {t: specimens[int(readings.specimen[k])].matrix for t, k in first.items()}
-    ln_usual = np.full(len(made.treatments), np.nan)
-    for t, matrix in matrix_of.items():
-        ln_usual[t] = usual.get((made.treatments[t].match.analyte, matrix), np.nan)
+    matrix = {t: specimens[int(readings.specimen[k])].matrix for t, k in first.items()}
+    lowest, highest = (np.full(len(made.treatments), np.nan) for _ in range(2))
+    published = _ranges(catalogue)
+    for t in matrix:
+        lowest[t], highest[t] = published.get((made.treatments[t].match.analyte, matrix[t]), (np.nan, np.nan))
     of = made.treatment[cells]
-    off = np.log(readings.mol_per_l[cells]) - ln_usual[of]
-    is_far = np.abs(off) > np.log(_FAR)
-    total, far = (np.bincount(of[which], minlength=len(ln_usual)) for which in (slice(None), is_far))
+    ln_c = np.log(readings.mol_per_l[cells])
+    nearest = np.clip(ln_c, lowest[of], highest[of])
+    is_far = np.abs(ln_c - nearest) > np.log(_FAR)
+    total, far = (np.bincount(of[which], minlength=len(lowest)) for which in (slice(None), is_far))
     problems = []
     for t in np.flatnonzero(far).tolist():
         j = int(np.flatnonzero(is_far & (of == t))[0])
-        cell, factor = int(cells[j]), float(np.exp(abs(off[j])))
+        cell = int(cells[j])
         written = f"{readings.name[cell]} of {readings.value[cell]} {readings.unit[cell]}"
-        way = "above" if off[j] > 0 else "below"
-        usual_size = _size(float(np.exp(ln_usual[t])))
+        factor = (
+            f"{_round(float(np.exp(abs(ln_c[j] - nearest[j]))))} times {'above' if ln_c[j] > nearest[j] else 'below'}"
+        )
+        usual = f"what is published for {matrix[t].replace('_', ' ')} ({_size(float(np.exp(nearest[j])))})"
         likely = "probably a slip of the unit" if 2 * far[t] > total[t] else "perhaps a slip of the unit or the point"
         more = f" ({far[t]} values)" if far[t] > 1 else ""
-        what = (
-            f"{written} is {_round(factor)} times {way} what is published for {matrix_of[t].replace('_', ' ')} "
-            f"({usual_size}): {likely}{more}"
-        )
-        remedy = "check it; nothing was changed"
         code = specimens[int(readings.specimen[cell])].code if far[t] == 1 else ""
+        what, remedy = f"{written} is {factor} {usual}: {likely}{more}", "check it; nothing was changed"
         row, column = int(readings.row[cell]), str(readings.column[cell])
         problems.append(Problem(Severity.NOTE, file, row, column, what, remedy, code))
     return sorted(problems, key=lambda p: p.row)
+
+
+def _ranges(catalogue: Catalogue) -> dict[tuple[str, str], tuple[float, float]]:
+    """(metabolite, matrix) → the lowest and the highest published ln of mol/L."""
+    made: dict[tuple[str, str], tuple[float, float]] = {}
+    for p in catalogue.published:
+        key = (p.metabolite_id, p.matrix_id)
+        low, high = made.get(key, (p.ln_mean, p.ln_mean))
+        made[key] = (min(low, p.ln_mean), max(high, p.ln_mean))
+    return made
 
 
 def _round(number: float) -> str:
