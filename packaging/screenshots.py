@@ -51,7 +51,8 @@ def _take_all(folder: Path, scale: float, settings: str) -> int:
 
     def take(name: str) -> None:
         nonlocal taken
-        application.processEvents()
+        for _ in range(3):  # layouts settle in more than one round
+            application.processEvents()
         path = folder / f"{name}@{scale:g}x.png"
         window.grab().save(str(path))
         taken += 1

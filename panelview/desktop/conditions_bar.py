@@ -5,8 +5,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from PySide6.QtCore import QLocale, Qt, Signal
-from PySide6.QtGui import QValidator
+from PySide6.QtCore import QLocale, QSize, Qt, Signal
+from PySide6.QtGui import QFontMetrics, QValidator
 from PySide6.QtWidgets import (
     QComboBox,
     QDoubleSpinBox,
@@ -27,7 +27,8 @@ from panelview.thermo.physical import ZERO_CELSIUS
 
 @dataclass(frozen=True, slots=True)
 class _Kind:
-    """How one condition is shown. offset: added to make the model's value; step, decimals: of the field."""
+    """How one condition is shown. offset: added to make the model's value; step, decimals: of the
+    field; widest: its widest usual value."""
 
     field: str
     label: str
@@ -36,21 +37,27 @@ class _Kind:
     step: float
     sd_step: float
     decimals: int
+    widest: str
 
 
 _KINDS = (
-    _Kind("ph", "pH", "", 0.0, 0.05, 0.01, 2),
-    _Kind("temperature", "Temperature", "°C", ZERO_CELSIUS, 0.5, 0.1, 1),
-    _Kind("ionic_strength", "Ionic strength", "mol/L", 0.0, 0.01, 0.01, 3),
-    _Kind("pmg", "pMg", "", 0.0, 0.1, 0.05, 2),
+    _Kind("ph", "pH", "", 0.0, 0.05, 0.01, 2, "7.00"),
+    _Kind("temperature", "Temperature", "°C", ZERO_CELSIUS, 0.5, 0.1, 1, "37.0"),
+    _Kind("ionic_strength", "Ionic strength", "mol/L", 0.0, 0.01, 0.01, 3, "0.000"),
+    _Kind("pmg", "pMg", "", 0.0, 0.1, 0.05, 2, "10.00"),
 )
+
+
+#: Longest name of a matrix that is shown whole, px; the tooltip has all of it.
+_MATRIX_WIDTH = 130
 
 
 class NumberField(QDoubleSpinBox):
     """A number with a point or a comma; takes any number, so that the model can say what it refuses."""
 
-    def __init__(self, decimals: int, step: float, lowest: float = -1000.0) -> None:
+    def __init__(self, decimals: int, step: float, widest: str, lowest: float = -1000.0) -> None:
         super().__init__()
+        self._widest = widest
         self.setLocale(QLocale.c())
         self.setDecimals(decimals)
         self.setSingleStep(step)
@@ -68,6 +75,14 @@ class NumberField(QDoubleSpinBox):
     def wheelEvent(self, event: object) -> None:
         """The wheel scrolls the window; a value changes only on purpose."""
         event.ignore()  # type: ignore[attr-defined]
+
+    def sizeHint(self) -> QSize:
+        """Room for the widest usual value, not for every number that may be typed."""
+        text = QFontMetrics(self.font()).horizontalAdvance(self.prefix() + self._widest)
+        return QSize(text + 38, super().sizeHint().height())
+
+    def minimumSizeHint(self) -> QSize:
+        return self.sizeHint()
 
     def show_value(self, value: float) -> None:
         """Show a value without telling anyone."""
@@ -88,10 +103,10 @@ class ConditionField(QWidget):
         label = LABELS[kind.field]
         low, high = (x - kind.offset for x in LIMITS[kind.field])
         tip = f"{kind.label} of the specimen; the model holds from {low:g} to {high:g} {kind.unit}".strip()
-        self.value = NumberField(kind.decimals, kind.step)
+        self.value = NumberField(kind.decimals, kind.step, kind.widest)
         self.value.setAccessibleName(f"{label} of the specimen, {kind.unit}".rstrip(", "))
         self.value.setToolTip(tip)
-        self.sd = NumberField(kind.decimals, kind.sd_step, lowest=0.0)
+        self.sd = NumberField(kind.decimals, kind.sd_step, f"{0:.{kind.decimals}f}", lowest=0.0)
         self.sd.setAccessibleName(f"standard uncertainty of {label}")
         self.sd.setToolTip(f"Standard uncertainty of {label}")
         self.sd.setPrefix("± ")
@@ -154,7 +169,7 @@ class ConditionsBar(QWidget):
         self.ratios.clicked.connect(self.ratios_asked)
         self.ratios_origin = QLabel()
         self.ratios_origin.setProperty("role", "origin")
-        self.floor = NumberField(1, 0.5, lowest=0.0)
+        self.floor = NumberField(1, 0.5, "10.0", lowest=0.0)
         self.floor.setAccessibleName("Smallest shift that is highlighted")
         self.floor.setToolTip("Smallest shift that is highlighted, kJ/mol")
         self.floor.valueChanged.connect(self._set_floor)
@@ -171,7 +186,7 @@ class ConditionsBar(QWidget):
     def _lay_out(self) -> None:
         layout = QHBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
-        layout.setSpacing(14)
+        layout.setSpacing(12)
         layout.addWidget(_stack(QLabel("Matrix"), self.matrix, self.matrix_origin))
         for field in self.fields.values():
             layout.addWidget(field)
@@ -193,7 +208,12 @@ class ConditionsBar(QWidget):
                 review.condition_origin[name][i],
             )
         record = review.catalogue.matrices.get(review.specimens[i].matrix)
-        self.matrix.setText(f"<b>{record.name}</b>" if record else "<b>not stated</b>")
+        name = record.name if record else "not stated"
+        font = self.matrix.font()
+        font.setBold(True)
+        self.matrix.setFont(font)
+        self.matrix.setText(QFontMetrics(font).elidedText(name, Qt.TextElideMode.ElideRight, _MATRIX_WIDTH))
+        self.matrix.setToolTip(name)
         show_origin(self.matrix_origin, self._reviewing.matrix_origin(i))
         own = sum(ratio.source == ORIGIN_REVIEWER for ratio in self._reviewing.settings.free_ratios.values())
         show_origin(self.ratios_origin, ORIGIN_REVIEWER if own else "from couples of the panel")
@@ -242,5 +262,5 @@ def _stack(*widgets: QWidget) -> QWidget:
     layout.setVerticalSpacing(1)
     for row, widget in enumerate(widgets):
         layout.addWidget(widget, row, 0)
-    box.setSizePolicy(QSizePolicy.Policy.Maximum, QSizePolicy.Policy.Preferred)
+    box.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Preferred)
     return box

@@ -12,7 +12,7 @@ from PySide6.QtWidgets import QApplication, QFileDialog, QMenu
 from panelview.desktop import work
 from panelview.desktop.arrangement import Order
 from panelview.desktop.notices import Severity
-from panelview.desktop.reading_report import left_out
+from panelview.desktop.reading_report import counted, left_out
 from panelview.desktop.reference_menu import ReferenceMenu
 from panelview.desktop.samples import SAMPLES, sample_path
 from panelview.desktop.theme import Choice
@@ -154,7 +154,7 @@ class Desk:
                 self.show_reading,
             )
         off = int(review.findings.highlighted.sum())
-        self._window.bottom.say(f"{len(review.specimens)} specimens read, {off} steps off in all")
+        self._window.bottom.say(f"{counted(len(review.specimens), 'specimen')} read, {counted(off, 'step')} off in all")
 
     def show_reading(self) -> None:
         self._window.actions_["show_below"].setChecked(True)

@@ -65,7 +65,7 @@ def _css(colours: Colours) -> str:
         f".muted, th {{ color: {colours.muted}; font-weight: normal; }}"
         f".caution {{ color: {colours.caution}; }}"
         f"td, th {{ padding: 1px 8px 1px 0; text-align: left; vertical-align: top; }}"
-        f".whole {{ white-space: nowrap; }}"
+        f".whole, th {{ white-space: nowrap; }}"
         f"li {{ margin: 2px 0; color: {colours.text}; }}"
     )
 

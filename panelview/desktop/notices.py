@@ -5,9 +5,9 @@ from __future__ import annotations
 from enum import Enum
 
 from PySide6.QtCore import Qt, QTimer, Signal
-from PySide6.QtGui import QFontMetrics, QResizeEvent
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QProgressBar, QPushButton, QSizePolicy, QWidget
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QProgressBar, QPushButton, QWidget
 
+from panelview.desktop.elided import ElidedLabel
 from panelview.desktop.work import Token
 from panelview.output.text import CAUTION
 
@@ -64,33 +64,6 @@ class NoticeBar(QFrame):
         self.show()
 
 
-class _Elided(QLabel):
-    """One line, cut with an ellipsis rather than pushing its neighbours away; the tooltip has it whole."""
-
-    def __init__(self) -> None:
-        super().__init__()
-        self._whole = ""
-        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
-        self.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
-
-    def say(self, text: str) -> None:
-        self._whole = text
-        self.setToolTip(text)
-        self._cut()
-
-    @property
-    def whole(self) -> str:
-        return self._whole
-
-    def resizeEvent(self, event: QResizeEvent) -> None:
-        super().resizeEvent(event)
-        self._cut()
-
-    def _cut(self) -> None:
-        metrics = QFontMetrics(self.font())
-        self.setText(metrics.elidedText(self._whole, Qt.TextElideMode.ElideRight, max(self.width() - 2, 0)))
-
-
 class BottomLine(QWidget):
     """Always in sight: the caution; beside it passing messages, progress and a button to stop."""
 
@@ -102,7 +75,7 @@ class BottomLine(QWidget):
         self.caution = QLabel(CAUTION)
         self.caution.setObjectName("caution_line")
         self.caution.setAccessibleName(CAUTION)
-        self.message = _Elided()
+        self.message = ElidedLabel(Qt.AlignmentFlag.AlignRight)
         self.progress = QProgressBar()
         self.progress.setFixedWidth(140)
         self.progress.setTextVisible(False)

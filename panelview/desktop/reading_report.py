@@ -24,7 +24,7 @@ def summary(panel: Panel) -> str:
     states = panel.readings.state
     measured = int(np.count_nonzero(states == State.MEASURED))
     beyond = int(np.count_nonzero((states == State.BELOW_LOQ) | (states == State.ABOVE_RANGE)))
-    parts = [f"{len(panel.specimens)} specimens", f"{measured} values"]
+    parts = [counted(len(panel.specimens), "specimen"), counted(measured, "value")]
     if beyond:
         parts.append(f"{beyond} beyond a limit of quantification")
     for state, words in (
@@ -51,11 +51,12 @@ def left_out(panel: Panel) -> str:
     """How many values and specimens were left out, in words; "" where none was."""
     values = sum(p.severity is Severity.VALUE for p in panel.problems)
     specimens = sum(p.severity is Severity.SPECIMEN for p in panel.problems)
-    parts = [_counted(n, what) for n, what in ((values, "value"), (specimens, "specimen")) if n]
+    parts = [counted(n, what) for n, what in ((values, "value"), (specimens, "specimen")) if n]
     return " and ".join(parts)
 
 
-def _counted(count: int, what: str) -> str:
+def counted(count: int, what: str) -> str:
+    """A number of things in words: "1 value", "3 values"."""
     return f"1 {what}" if count == 1 else f"{count} {what}s"
 
 

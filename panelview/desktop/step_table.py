@@ -62,7 +62,8 @@ class StepTable(QTableView):
     def setModel(self, model: StepModel) -> None:  # type: ignore[override]
         super().setModel(model)
         self._header.setMinimumSectionSize(40)
-        model.modelReset.connect(self._span_headings)
+        model.modelReset.connect(self._span)
+        model.dataChanged.connect(self._span)
         self._fit_columns()
 
     def set_look(self, scale: Scale, axis: Axis, colours: Colours) -> None:
@@ -127,13 +128,16 @@ class StepTable(QTableView):
         others = sum(self.columnWidth(cell) for cell in Cell if cell is not Cell.STRIP)
         self.setColumnWidth(Cell.STRIP, max(_LEAST_STRIP, width - others))
 
-    def _span_headings(self) -> None:
+    def _span(self) -> None:
+        """A heading takes its whole row; a reason takes the room of the Γ that is not known either."""
         model = self.model()
         assert isinstance(model, StepModel)
         self.clearSpans()
         for k, row in enumerate(model.rows):
             if isinstance(row, Heading):
                 self.setSpan(k, 0, 1, len(Cell))
+            elif model.look(row) == "unread":
+                self.setSpan(k, Cell.STRIP, 1, 2)
 
     def _fit_columns(self) -> None:
         font = self.font()

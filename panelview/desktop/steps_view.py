@@ -12,13 +12,13 @@ from PySide6.QtWidgets import (
     QLabel,
     QLineEdit,
     QPushButton,
-    QSizePolicy,
     QVBoxLayout,
     QWidget,
 )
 
 from panelview.assess.review import ORIGIN_REVIEWER
 from panelview.desktop.arrangement import Arrangement, Order, arranged, pathways, unread_count
+from panelview.desktop.elided import ElidedLabel
 from panelview.desktop.palette import Colours
 from panelview.desktop.reviewing import Reviewing
 from panelview.desktop.step_model import StepModel
@@ -55,9 +55,12 @@ class StepsView(QWidget):
     # -- making ----------------------------------------------------------------------------------
 
     def _make_controls(self) -> None:
-        self.heading = QLabel()
-        self.heading.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
-        self.heading.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+        self.code = QLabel()
+        self.code.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        bold = self.code.font()
+        bold.setBold(True)
+        self.code.setFont(bold)
+        self.heading = ElidedLabel()
         self._axis_buttons = {
             Axis.SHIFT: _segment("&Shift against controls", "left", "How far each step stands from the controls"),
             Axis.DISTANCE: _segment("&Distance from equilibrium", "right", "ΔG′ of each step; 0 is equilibrium"),
@@ -102,6 +105,7 @@ class StepsView(QWidget):
             controls.addWidget(widget)
         controls.addWidget(self.filter_edit, 1)
         top = QHBoxLayout()
+        top.addWidget(self.code)
         top.addWidget(self.heading, 1)
         top.addWidget(self.hide_box)
         layout = QVBoxLayout(self)
@@ -192,11 +196,12 @@ class StepsView(QWidget):
         read = len(review.columns) - unread
         off = int(review.findings.highlighted[specimen].sum())
         said = "no step off" if off == 0 else f"{off} step{'s' if off > 1 else ''} off"
-        compared = review.reference.label
+        kind = review.reference.kind
+        compared = review.reference.label if kind == "none" else f"compared with {review.reference.label}"
         if self._reviewing.settings.reference != self._reviewing.start.reference:
             compared += f" ({ORIGIN_REVIEWER})"
-        self.heading.setText(f"<b>{facts.code}</b> · {said} of {read} read · compared with {compared}")
-        self.heading.setToolTip(f"Compared with: {compared}")
+        self.code.setText(facts.code)
+        self.heading.say(f"· {said} of {read} read · {compared}")
         self.hide_box.setText(f"Hide {unread} not readable")
 
 

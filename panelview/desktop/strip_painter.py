@@ -165,7 +165,7 @@ class StripPainter:
         metrics = QFontMetricsF(painter.font())
         if has_title:
             self._axis_words(painter, area, axis, metrics)
-        base = area.bottom() - 1
+        base = area.bottom() - 4.5  # the break marks reach under it
         painter.setPen(QPen(self._colours.colour("muted"), 1.0))
         painter.drawLine(QLineF(area.left() + MARGIN, base, area.right() - MARGIN, base))
         widest = metrics.horizontalAdvance("−00")

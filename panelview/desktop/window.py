@@ -27,6 +27,7 @@ from panelview.desktop.theme import Choice, Theme
 from panelview.output.scale import Axis
 
 _SIZE = (1280, 720)
+_LEAST_SIZE = (1180, 620)
 
 
 class MainWindow(QMainWindow):
@@ -100,7 +101,7 @@ class MainWindow(QMainWindow):
         layout.addWidget(self._pages, 1)
         layout.addWidget(self.bottom)
         self.setCentralWidget(whole)
-        self.setMinimumSize(1000, 600)
+        self.setMinimumSize(*_LEAST_SIZE)
 
     def _wire(self) -> None:
         reviewing = self.reviewing
