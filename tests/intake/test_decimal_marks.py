@@ -30,7 +30,8 @@ from panelview.intake.decimal_marks import Mark, Marks, decimal_mark, without_gr
     ids=lambda value: " ".join(value) if isinstance(value, list) else value.name,
 )
 def test_it_is_told_by_numbers_that_can_be_read_in_one_way_only(cells, mark):
-    assert decimal_mark(cells) == Marks(mark, is_ungrouped=decimal_mark(cells).is_ungrouped)
+    found = decimal_mark(cells)
+    assert (found.mark, found.is_mixed, found.doubtful) == (mark, False, -1)
 
 
 def test_one_sure_number_settles_the_doubtful_ones():
