@@ -28,6 +28,7 @@ from panelview.desktop.reading_report import (
     PROBLEM_HEADINGS,
     VALUE_HEADINGS,
     ValueRows,
+    counted,
     problem_rows,
     summary,
 )
@@ -193,7 +194,7 @@ class BelowView(QTabWidget):
         self.summary.setText(summary(review.panel))
         problems = problem_rows(review.panel)
         self.problems.texts.show(problems)
-        self.setTabText(1, f"What was read ({len(problems)} remarks)" if problems else "What was read")
+        self.setTabText(1, f"What was read ({counted(len(problems), 'remark')})" if problems else "What was read")
         self.values.texts.show(ValueRows(review.panel))
 
     def _show_state(self) -> None:
