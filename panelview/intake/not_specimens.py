@@ -12,7 +12,7 @@ _KINDS = (
     ("a calibrator", r"(?:cal|calibrator|calibration|calibrant|std|standard|cal std|calibration standard)"),
     ("a reference material", r"(?:nist[\s_-]*)?srm"),
 )
-_NUMBER = r"[\s_.#-]*[0-9]{0,4}[a-c]?\Z"
+_NUMBER = r"[\s_.#-]*(?:[0-9]{1,4}[a-c]?)?\Z"
 _NAMED = tuple((kind, re.compile(words + _NUMBER, re.IGNORECASE)) for kind, words in _KINDS)
 
 #: First cells of rows under a table, or headings of columns beside it.

@@ -70,7 +70,7 @@ def read_file(path: Path) -> bytes:
     try:
         found = path.stat()
         if stat.S_ISDIR(found.st_mode):
-            raise refused(name, 0, "", "this is a folder, not a panel file", "give the files in it one by one")
+            raise refused(name, 0, "", "this is a folder, not a file", "give the files in it one by one")
         if not stat.S_ISREG(found.st_mode):
             raise refused(name, 0, "", "this is a device or a pipe, not a file", "save the panel to a file first")
         if found.st_size > LARGEST_FILE:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import pytest
-from intake_helpers import LONG, problems, read, seen
+from panel_texts import LONG, problems, read, seen
 
 from panelview.intake.panel import State
 from panelview.intake.problems import InputRefused, Severity
@@ -242,7 +242,7 @@ def test_a_refused_specimen_is_named_and_the_others_read(catalogue, name):
 
 
 def test_a_folder_is_refused(catalogue, tmp_path):
-    with pytest.raises(InputRefused, match=f"{tmp_path.name}::: this is a folder, not a panel file; give the files"):
+    with pytest.raises(InputRefused, match=rf"{tmp_path.name}::: this is a folder, not a file; give the files"):
         read_panels([tmp_path], catalogue)
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 import pytest
-from intake_helpers import LONG, one, problems, read, seen
+from panel_texts import LONG, one, problems, read, seen
 
 from panelview.intake.conversion import DEFAULT_CV
 from panelview.intake.panel import State

@@ -7,7 +7,7 @@ import random
 
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from intake_helpers import by_name, read
+from panel_texts import by_name, read
 
 from panelview.intake.panel import State
 from panelview.intake.problems import InputRefused, Severity
@@ -38,11 +38,11 @@ def keyed(catalogue, text: str) -> dict[tuple[str, str], tuple[str, float]]:
     return {(r[0], r[1]): (r[7], -1.0 if math.isnan(r[5]) else r[5]) for r in intake_rows(panel)}
 
 
-@given(table=tables, seed=st.integers(0, 1000))
-def test_the_order_of_rows_and_columns_and_the_layout_do_not_matter(catalogue, table, seed):
+@given(table=tables, shuffle=st.integers(0, 1000))
+def test_the_order_of_rows_and_columns_and_the_layout_do_not_matter(catalogue, table, shuffle):
     rows, columns = list(range(len(table))), list(range(len(ANALYTES)))
     plain = keyed(catalogue, wide(table, rows, columns))
-    order = random.Random(seed)
+    order = random.Random(shuffle)
     order.shuffle(rows)
     order.shuffle(columns)
     assert keyed(catalogue, wide(table, rows, columns)) == plain

@@ -5,7 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 
 import pytest
-from intake_helpers import LONG, by_name, problems, read, refusal, seen
+from panel_texts import LONG, by_name, problems, read, refusal, seen
 
 from panelview.intake.panel import State
 from panelview.intake.problems import Severity

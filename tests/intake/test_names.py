@@ -7,7 +7,7 @@ import dataclasses
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-from intake_helpers import LONG, problems, read, seen
+from panel_texts import LONG, problems, read, seen
 
 from panelview.catalogue.metabolites import Name
 from panelview.intake.names import Names

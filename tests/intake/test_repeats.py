@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 import pytest
-from intake_helpers import LONG, problems, read, seen
+from panel_texts import LONG, problems, read, seen
 
 from panelview.intake.panel import State
 from panelview.intake.problems import Severity

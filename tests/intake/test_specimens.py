@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import pytest
-from intake_helpers import LONG, problems, read, refusal, seen
+from panel_texts import LONG, problems, read, refusal, seen
 
 from panelview.intake.panel import State
 from panelview.intake.problems import InputRefused, Severity

@@ -5,7 +5,7 @@ from __future__ import annotations
 import json
 import math
 
-from intake_helpers import LONG, read
+from panel_texts import LONG, read
 
 from panelview.intake.summary import INTAKE_COLUMNS, describe, intake_rows
 
