@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import re
 
 #: What a code or a word of a group or matrix column says (common practice, no source), with a number behind it or not.
@@ -13,6 +14,7 @@ _KINDS = (
     ("a reference material", r"(?:nist[\s_-]*)?srm"),
 )
 _NUMBER = r"[\s_.#-]*(?:[0-9]{1,4}[a-c]?)?\Z"
+_ANY = re.compile(f"(?:{'|'.join(words for _, words in _KINDS)}){_NUMBER}", re.IGNORECASE)
 _NAMED = tuple((kind, re.compile(words + _NUMBER, re.IGNORECASE)) for kind, words in _KINDS)
 
 #: First cells of rows under a table, or headings of columns beside it.
@@ -23,6 +25,7 @@ _STATISTICS = frozenset(
 )
 
 
+@functools.lru_cache(maxsize=256)
 def not_a_specimen(code: str) -> str:
     """What a code says it is in place of a specimen ("a blank"); "" for the code of a specimen.
 
@@ -34,4 +37,6 @@ def not_a_specimen(code: str) -> str:
         return ""
     if text.casefold() in _STATISTICS:
         return "a statistic of the others"
-    return next((kind for kind, pattern in _NAMED if pattern.match(text)), "")
+    if not _ANY.match(text):
+        return ""
+    return next(kind for kind, pattern in _NAMED if pattern.match(text))

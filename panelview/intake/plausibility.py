@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
 import numpy as np
@@ -25,26 +26,25 @@ def far_from_published(
     """
     readings = made.readings
     cells = np.flatnonzero((readings.state == State.MEASURED) & np.isfinite(readings.mol_per_l))
-    first = dict(zip(made.treatment[cells[::-1]].tolist(), cells[::-1].tolist(), strict=True))
-    matrix = {t: specimens[int(readings.specimen[k])].matrix for t, k in first.items()}
+    first = np.full(len(made.treatments), -1, dtype=np.intp)
+    first[made.treatment[cells[::-1]]] = cells[::-1]
+    matrix = {t: specimens[int(readings.specimen[k])].matrix for t, k in enumerate(first.tolist()) if k >= 0}
     lowest, highest = (np.full(len(made.treatments), np.nan) for _ in range(2))
     published = _ranges(catalogue)
     for t in matrix:
         lowest[t], highest[t] = published.get((made.treatments[t].match.analyte, matrix[t]), (np.nan, np.nan))
-    of = made.treatment[cells]
-    ln_c = np.log(readings.mol_per_l[cells])
-    nearest = np.clip(ln_c, lowest[of], highest[of])
-    is_far = np.abs(ln_c - nearest) > np.log(_FAR)
+    of, mol_per_l = made.treatment[cells], readings.mol_per_l[cells]
+    is_far = (mol_per_l > _FAR * highest[of]) | (mol_per_l < lowest[of] / _FAR)
     total, far = (np.bincount(of[which], minlength=len(lowest)) for which in (slice(None), is_far))
     problems = []
     for t in np.flatnonzero(far).tolist():
         j = int(np.flatnonzero(is_far & (of == t))[0])
         cell = int(cells[j])
         written = f"{readings.name[cell]} of {readings.value[cell]} {readings.unit[cell]}"
-        factor = (
-            f"{_round(float(np.exp(abs(ln_c[j] - nearest[j]))))} times {'above' if ln_c[j] > nearest[j] else 'below'}"
-        )
-        usual = f"what is published for {matrix[t].replace('_', ' ')} ({_size(float(np.exp(nearest[j])))})"
+        found, is_above = float(mol_per_l[j]), bool(mol_per_l[j] > highest[t])
+        nearest = float(highest[t] if is_above else lowest[t])
+        factor = f"{_round(max(found / nearest, nearest / found))} times {'above' if is_above else 'below'}"
+        usual = f"what is published for {matrix[t].replace('_', ' ')} ({_size(nearest)})"
         likely = "probably a slip of the unit" if 2 * far[t] > total[t] else "perhaps a slip of the unit or the point"
         more = f" ({far[t]} values)" if far[t] > 1 else ""
         code = specimens[int(readings.specimen[cell])].code if far[t] == 1 else ""
@@ -55,12 +55,12 @@ def far_from_published(
 
 
 def _ranges(catalogue: Catalogue) -> dict[tuple[str, str], tuple[float, float]]:
-    """(metabolite, matrix) → the lowest and the highest published ln of mol/L."""
+    """(metabolite, matrix) → the lowest and the highest published mean, mol/L."""
     made: dict[tuple[str, str], tuple[float, float]] = {}
     for p in catalogue.published:
-        key = (p.metabolite_id, p.matrix_id)
-        low, high = made.get(key, (p.ln_mean, p.ln_mean))
-        made[key] = (min(low, p.ln_mean), max(high, p.ln_mean))
+        key, mean = (p.metabolite_id, p.matrix_id), math.exp(p.ln_mean)
+        low, high = made.get(key, (mean, mean))
+        made[key] = (min(low, mean), max(high, mean))
     return made
 
 
