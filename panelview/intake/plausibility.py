@@ -58,6 +58,8 @@ def _ranges(catalogue: Catalogue) -> dict[tuple[str, str], tuple[float, float]]:
     """(metabolite, matrix) → the lowest and the highest published mean, mol/L."""
     made: dict[tuple[str, str], tuple[float, float]] = {}
     for p in catalogue.published:
+        if math.isnan(p.ln_mean):  # a limit or a range only
+            continue
         key, mean = (p.metabolite_id, p.matrix_id), math.exp(p.ln_mean)
         low, high = made.get(key, (mean, mean))
         made[key] = (min(low, mean), max(high, mean))

@@ -50,8 +50,22 @@ def test_every_published_value_is_plausible_itself(catalogue):
     rows = [
         f"S{k},{p.matrix_id},{p.metabolite_id},{math.exp(p.ln_mean) * 1000:.6g},mmol/L"
         for k, p in enumerate(catalogue.published)
+        if math.isfinite(p.ln_mean)
     ]
     assert not slips(read(catalogue, LONG + "\n".join(rows) + "\n"))
+
+
+def test_every_analyte_with_a_published_mean_is_compared(catalogue):
+    smallest: dict[tuple[str, str], float] = {}
+    for p in catalogue.published:
+        if math.isfinite(p.ln_mean):
+            key = (p.metabolite_id, p.matrix_id)
+            smallest[key] = min(smallest.get(key, math.inf), math.exp(p.ln_mean))
+    rows = [
+        f"S{k},{matrix},{analyte},{low * 1e9 / 1000:.6g},nmol/L"
+        for k, ((analyte, matrix), low) in enumerate(smallest.items())
+    ]
+    assert {p.row for p in slips(read(catalogue, LONG + "\n".join(rows) + "\n"))} == set(range(2, len(rows) + 2))
 
 
 def test_ketone_bodies_of_ketoacidosis_are_explained_by_fasting_values(catalogue):
