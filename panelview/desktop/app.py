@@ -53,7 +53,9 @@ def run(
     if argv_file is not None:
         window.reviewing.open([argv_file], matrix)
     QTimer.singleShot(_STARTED_AFTER, window, lambda: _after_start(application))
-    return application.exec()
+    status = application.exec()
+    gc.freeze()  # the interpreter ends here: it need not look through all that is left for cycles
+    return status
 
 
 def _after_start(application: QApplication) -> None:
