@@ -17,9 +17,7 @@ _SIZES = ((1280, 720), (1920, 1080))
 
 
 def main() -> int:
-    parser = argparse.ArgumentParser(
-        description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
+    parser = argparse.ArgumentParser(description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter)
     parser.add_argument("folder", type=Path)
     parser.add_argument("--scale", type=float, default=1.0, help="device pixels per pixel (1 or 2)")
     wanted = parser.parse_args()
