@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import compress
 
 import numpy as np
 
-from panelview.intake.headings import is_idle, is_personal, split_unit
+from panelview.intake.headings import field_of, is_idle, is_personal, split_unit
 from panelview.intake.names import Names
 from panelview.intake.problems import Problem, Severity
 from panelview.intake.records import METADATA, Records, Series, Statement, same_text, stripped, texts
@@ -235,9 +236,13 @@ def _is_unit(text: str) -> bool:
 
 
 def analytes_in_rows(table: Table, names: Names) -> Records:
-    """One row an analyte, one column a specimen."""
+    """One row an analyte, one column a specimen; rows that are headed group, matrix and the like say what these are."""
     grid, heading = table.grid, table.heading
-    rows, lines = grid.rows[1:], grid.lines[1:]
+    first = table.at("analyte")
+    field = [field_of(row[first]) for row in grid.rows[1:]]
+    said = [(f, row, line) for f, row, line in zip(field, grid.rows[1:], grid.lines[1:], strict=True) if f in METADATA]
+    is_analyte = [f not in METADATA for f in field]
+    rows, lines = (list(compress(part[1:], is_analyte)) for part in (grid.rows, grid.lines))
     columns = [stripped(column) for column in zip(*rows, strict=True)]
     described = {k: table.at(k) for k in ("analyte", "unit", "lloq", "cv_percent")}
     specimens = [
@@ -266,8 +271,11 @@ def analytes_in_rows(table: Table, names: Names) -> Records:
     return Records(
         source=grid.source,
         layout=f"analytes in rows, {grid.layout}",
-        columns={},
-        statements=[Statement(grid.lines[0], code, {}) for code in codes],
+        columns={f: row[first].strip() for f, row, _ in said},
+        statements=[
+            *(Statement(grid.lines[0], code, {}) for code in codes),
+            *(Statement(line, heading[k], {f: row[k].strip()}) for f, row, line in said for k in specimens),
+        ],
         codes=codes,
         series=series,
         specimen=np.tile(np.arange(m, dtype=np.intp), n),

@@ -97,7 +97,10 @@ class Names:
             return ()
         self._looked_up += 1
         near = difflib.get_close_matches(_spelled(text, _WIDE), self._wide, n=_OFFERED, cutoff=_ALIKE)
-        offered = {c: None for key in near for s in sorted(self._wide[key]) for c in self._exact[s]}
+        # A name among other words, as in “plasma lactate”.
+        words = (self._wide.get(_spelled(word, _WIDE), ()) for word in re.findall(r"[^\s,;:()\[\]]{3,}", text))
+        spellings = [s for found in (*words, *(self._wide[key] for key in near)) for s in sorted(found)]
+        offered = {c: None for s in spellings for c in self._exact[s]}
         return tuple(offered)[:_OFFERED]
 
     def _of(self, written: str, spelling: str, how: str) -> Match:

@@ -7,7 +7,7 @@ import re
 
 #: What a code or a word of a group or matrix column says (common practice, no source), with a number behind it or not.
 _KINDS = (
-    ("a quality control", r"(?:pooled|low|mid|medium|high|level)?\s*(?:iqc|qc|qcs|quality control|control sample)"),
+    ("a quality control", r"(?:pooled|low|mid|medium|high|level)?\s*(?:iqc|qc|qcs|quality control)"),
     ("a quality control", r"(?:qc|quality control)[\s_.-]*(?:low|mid|medium|high|level|pool|[lmh])"),
     ("a blank", r"(?:double|solvent|procedural|process|extraction|reagent|matrix|method)?\s*(?:blank|blk|blanks)"),
     ("a calibrator", r"(?:cal|calibrator|calibration|calibrant|std|standard|cal std|calibration standard)"),
@@ -20,9 +20,13 @@ _NAMED = tuple((kind, re.compile(words + _NUMBER, re.IGNORECASE)) for kind, word
 #: First cells of rows under a table, or headings of columns beside it.
 _STATISTICS = frozenset(
     "mean|average|avg|median|sd|s.d.|stdev|std dev|std. dev.|stddev|sem|s.e.m.|rsd|rsd%|%rsd|rsd (%)|cv|cv%|%cv|cv (%)|"
-    "minimum|maximum|sum|total|mittelwert|mw|standardabweichung|reference range|ref range|ref. range|normal range|"
-    "reference interval|referenzbereich|p|p-value|p value|fold change|count".split("|")
+    "minimum|maximum|mittelwert|standardabweichung|reference range|ref range|ref. range|normal range|"
+    "reference interval|referenzbereich|p-value|p value|fold change".split("|")
 )
+
+
+#: Kinds that a column of groups may name; there, a standard may be a diet and a mean a class.
+IN_GROUPS = ("a quality control", "a blank")
 
 
 @functools.lru_cache(maxsize=256)

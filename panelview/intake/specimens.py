@@ -10,7 +10,7 @@ import numpy as np
 
 from panelview.catalogue.load import Catalogue
 from panelview.intake.facts import MatrixWord, UnreadableFact, condition_of, matrix_of
-from panelview.intake.not_specimens import not_a_specimen
+from panelview.intake.not_specimens import IN_GROUPS, not_a_specimen
 from panelview.intake.panel import SpecimenFacts
 from panelview.intake.problems import Problem, Severity
 from panelview.intake.records import METADATA, Records, Statement
@@ -90,7 +90,7 @@ def _check_kind(code: str, statements: list[tuple[Records, Statement]]) -> None:
     for records, statement in statements:
         for name, text in (("specimen", code), *((n, statement.facts.get(n, "")) for n in ("group", "matrix"))):
             kind = "the heading" if text and text == records.columns.get(name) else not_a_specimen(text)
-            if kind:
+            if kind and (name != "group" or kind in ("the heading", *IN_GROUPS)):
                 what = f"“{_short(text)}” names {kind}, not a specimen"
                 remedy = "nothing need be done if so; otherwise give it another word"
                 column = records.columns.get(name, code)

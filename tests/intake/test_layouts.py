@@ -240,6 +240,28 @@ class TestAnalytesInRows:
         panel = read(catalogue, "Compound,Unit,A,B\nlactate,mM,1,NA\n", matrix="plasma")
         assert [s.code for s in panel.specimens] == ["A", "B"]
 
+    def test_rows_may_say_what_the_specimens_are(self, catalogue):
+        text = "Compound;Unit;S1;S2\nGroup;;control;case\nMatrix;;RBC;serum\npH;;7,2;\nLac;mM;1,2;1,4\n"
+        panel = read(catalogue, text)
+        assert [(s.group, s.matrix, s.ph) for s in panel.specimens] == [
+            ("control", "erythrocyte", 7.2),
+            ("case", "plasma", None),
+        ]
+        assert [(r.value, r.row) for r in seen(panel)] == [("1,2", 5), ("1,4", 5)]
+
+    def test_what_such_a_row_says_is_refused_by_its_place(self, catalogue):
+        panel = read(catalogue, "Compound,Unit,S1,S2\nMatrix,,bone,plasma\nLac,mM,1.2,1.4\n")
+        (problem,) = problems(panel)
+        assert (problem.severity, problem.row, problem.column, problem.specimen) == (
+            Severity.SPECIMEN,
+            2,
+            "Matrix",
+            "S1",
+        )
+
+    def test_a_table_of_nothing_else_is_refused(self, catalogue):
+        assert refusal(catalogue, "Compound,Unit,S1\nMatrix,,plasma\nGroup,,a\n").row == 1
+
     def test_limits_and_cv_in_columns(self, catalogue):
         (reading,) = seen(read(catalogue, "Compound,Unit,LLOQ,CV %,A\nlactate,mM,0.5,3,ND\n", matrix="plasma"))
         assert (reading.state, reading.mol_per_l) == (State.BELOW_LOQ, 0.5e-3)

@@ -93,6 +93,13 @@ def test_a_near_name_is_offered_and_not_taken(names, written, near):
     assert len(found.candidates) <= 3
 
 
+@pytest.mark.parametrize("written", ["lactate, venous", "Lactate conc.", "my (lactate)"])
+def test_a_name_among_other_words_is_offered_and_not_taken(names, written):
+    found = names.match(written)
+    assert (found.analyte, found.how) == ("", "unknown")
+    assert found.candidates[0] == "lactate"
+
+
 def test_no_more_names_are_looked_up_than_a_reader_could_use(catalogue):
     names = Names(catalogue)
     offered = [names.match(f"glukose {'x' * (k % 2)}{k}").candidates for k in range(300)]

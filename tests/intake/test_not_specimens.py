@@ -36,7 +36,8 @@ def test_the_words_of_laboratories(code, kind):
 @pytest.mark.parametrize(
     "code",
     ["", "A", "P01", "DEMO-01", "control 1", "Q-17", "QCM-2024-1", "Blanka", "blankets", "Calvin", "California-3",
-     "standard diet", "STDY-1", "meaning", "SDF-3", "p1", "CV-Joint", "x" * 1000, "QC" + "1" * 50],
+     "standard diet", "STDY-1", "meaning", "P", "control sample 2",
+     "SDF-3", "p1", "CV-Joint", "x" * 1000, "QC" + "1" * 50],
 )  # fmt: skip
 def test_codes_of_specimens(code):
     assert not_a_specimen(code) == ""
@@ -63,6 +64,11 @@ class TestInAFile:
         assert panel.refused_specimens == ("S17",)
         problem = next(p for p in problems(panel) if p.severity is Severity.SPECIMEN)
         assert (problem.row, problem.column) == (3, column)
+
+    @pytest.mark.parametrize("group", ["Standard", "standard 2", "P", "median", "control"])
+    def test_a_group_may_be_called_a_standard(self, catalogue, group):
+        panel = read(catalogue, f"specimen,group,lactate (mM)\nA,{group},1\n", matrix="plasma")
+        assert panel.specimens[0].group == group
 
     def test_an_instrument_s_word_for_a_specimen_is_no_matrix(self, catalogue):
         panel = read(catalogue, "specimen,sample type,lactate (mM)\nA,Unknown,1\nB,Blank,1\n")
