@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-import math
 from collections import Counter
 from collections.abc import Iterator
 from typing import Any
 
+import numpy as np
+
 from panelview.catalogue.load import Catalogue
-from panelview.intake.panel import Panel, State
+from panelview.intake.panel import Panel, SpecimenFacts, State
 from panelview.intake.problems import Problem, Severity
 
 INTAKE_COLUMNS = (
@@ -53,11 +54,12 @@ def intake_rows(panel: Panel) -> Iterator[IntakeRow]:
 def describe(panel: Panel, catalogue: Catalogue) -> dict[str, Any]:
     """Files, layout, specimens, analytes and how each was matched, units, states, problems."""
     r = panel.readings
-    states = Counter(State(int(s)).word for s in r.state)
+    values = np.bincount(r.specimen, minlength=len(panel.specimens)).tolist()
+    states = np.bincount(r.state, minlength=len(State)).tolist()
     return {
         "files": [{"name": s.name, "bytes": s.size, "sha256": s.sha256} for s in panel.sources],
         "layout": panel.layout,
-        "specimens": [_specimen(panel, k, catalogue) for k in range(len(panel.specimens))],
+        "specimens": [_specimen(facts, n, catalogue) for facts, n in zip(panel.specimens, values, strict=True)],
         "refused_specimens": list(panel.refused_specimens),
         "analytes": [
             {
@@ -69,15 +71,14 @@ def describe(panel: Panel, catalogue: Catalogue) -> dict[str, Any]:
             for m in panel.matches
         ],
         "units": _units(panel),
-        "states": dict(sorted(states.items())),
+        "states": {s.word: states[s] for s in sorted(State, key=lambda s: s.word) if states[s]},
         "below_loq": _of_state(panel, State.BELOW_LOQ),
         "assumed": [_problem(p) for p in panel.problems if p.severity is Severity.NOTE],
         "refused": [_problem(p) for p in panel.problems if p.severity is not Severity.NOTE],
     }
 
 
-def _specimen(panel: Panel, k: int, catalogue: Catalogue) -> dict[str, Any]:
-    facts = panel.specimens[k]
+def _specimen(facts: SpecimenFacts, values: int, catalogue: Catalogue) -> dict[str, Any]:
     return {
         "specimen": facts.code,
         "participant": facts.participant,
@@ -86,14 +87,15 @@ def _specimen(panel: Panel, k: int, catalogue: Catalogue) -> dict[str, Any]:
         "matrix_name": catalogue.matrices[facts.matrix].name if facts.matrix else "",
         "collected": facts.collected,
         "row": facts.row,
-        "values": int((panel.readings.specimen == k).sum()),
+        "values": values,
     }
 
 
 def _units(panel: Panel) -> list[dict[str, Any]]:
     """Each unit with the basis it was converted with and how many values carry it."""
     r = panel.readings
-    counted = Counter((r.unit[k], r.basis[k]) for k in range(len(r)) if not math.isnan(r.mol_per_l[k]))
+    used = np.flatnonzero(~np.isnan(r.mol_per_l))
+    counted = Counter(zip(r.unit[used].tolist(), r.basis[used].tolist(), strict=True))
     return [{"unit": unit, "basis": basis, "values": n} for (unit, basis), n in counted.items()]
 
 
@@ -107,8 +109,7 @@ def _of_state(panel: Panel, state: State) -> list[dict[str, Any]]:
             "row": int(r.row[k]),
             "column": r.column[k],
         }
-        for k in range(len(r))
-        if r.state[k] == state
+        for k in np.flatnonzero(r.state == state).tolist()
     ]
 
 
