@@ -86,9 +86,10 @@ def _refuse(
         columns = {str(readings.column[k]) for k in group}
         rows = ", ".join(str(readings.row[k]) for k in group)
         where = f"rows {rows}" if len(columns) == 1 else f"rows {rows}; columns {', '.join(sorted(columns))}"
+        remedy = "keep one value, or number them in a replicate column to have them averaged"
         if len({int(readings.row[k]) for k in group}) == 1:
             where = f"columns {', '.join(str(readings.column[k]) for k in group)}"
-        remedy = "keep one value, or number them in a replicate column to have them averaged"
+            remedy = "keep one of the columns"
     else:
         where = ", ".join(f"{files[file_of[k]]} row {readings.row[k]}" for k in group)
         remedy = "keep it in one of the files"

@@ -39,6 +39,7 @@ def test_two_columns_for_one_analyte_name_both_columns(catalogue):
     panel = read(catalogue, "specimen,matrix,Lac (mM),lactate (mM)\nA,plasma,1,2\n")
     (problem,) = problems(panel)
     assert "columns Lac (mM), lactate (mM)" in problem.what
+    assert problem.remedy.startswith("keep one of the columns")
 
 
 def test_a_specimen_in_two_rows_of_a_wide_table(catalogue):
