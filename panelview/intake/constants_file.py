@@ -79,9 +79,15 @@ def read_own_constants(path: Path, catalogue: Catalogue) -> dict[str, OwnConstan
             delta_g0_prime=value if has_energy else None,
             ln_k_prime=math.log(value) if has_k else None,
             sd=sd,
-            source=row.get("source", "").strip() or name,
+            source=_source(row, name, stated=math.isfinite(shipped)),
         )
     return own
+
+
+def _source(row: dict[str, str], name: str, *, stated: bool) -> str:
+    """The reviewer's source; says so where neither they nor the program know an uncertainty (it counts as 0)."""
+    source = row.get("source", "").strip() or name
+    return source if stated or row.get("sd_kj_per_mol", "").strip() else f"{source}; no uncertainty stated"
 
 
 def read_at(path: Path) -> list[AtRow]:
