@@ -169,8 +169,7 @@ class Planner:
         return ""
 
     def _strip_pool(self, row: _Row, pool: str) -> None:
-        """Leave the measured pair only: its shift is the shift of the free pool."""
-        row.combination[:] = 0.0
+        """Leave the measured pair and the couple's constant: its shift is that of the free pool, at any conditions."""
         for form in _pool_forms(pool):
             row.nu[self._position[form]] = 0.0
         if pool == "amp_cytosol":

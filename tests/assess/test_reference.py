@@ -9,7 +9,7 @@ from panels import RED_CELL, Specimen, at, panel_of, spread, value
 from panelview.assess.assess import assess
 from panelview.assess.calls import Shift
 from panelview.assess.reference import control_rows
-from panelview.assess.settings import ReferenceChoice, Settings, UnknownReference
+from panelview.assess.settings import ConditionChoice, ReferenceChoice, Settings, UnknownReference
 
 
 def study(catalogue, group: str = "control", choice: ReferenceChoice | None = None):
@@ -112,3 +112,16 @@ def test_a_healthy_table_of_another_laboratory_is_not_called_off(catalogue):
     review = study(catalogue, "batch A")
     assert review.reference.kind == "published"
     assert not review.findings.highlighted.any()
+
+
+def test_the_shift_of_a_defining_couple_is_that_of_the_free_ratio_when_ph_differs(catalogue):
+    """RT Δln K′ belongs to it: at equal lactate/pyruvate a lower pH means another free NAD⁺/NADH."""
+    pair = {"lactate": 2.9, "pyruvate": 0.051}
+    controls = spread(pair, 7, np.random.default_rng(3))
+    acid = Settings(specimen_conditions={"X": {"ph": ConditionChoice(6.5, None, "set by the reviewer")}})
+    review = assess(panel_of([*controls, Specimen("X", pair)]), catalogue, acid)
+    ratio = {r.specimen: r.value for r in review.state if r.quantity == "nad_nadh_free"}
+    usual = np.mean([np.log(ratio[k]) for k in range(7)])
+    expected = -8.314462618e-3 * 310.15 * (np.log(ratio[7]) - usual)
+    assert abs(expected) > 3
+    assert value(review, "shift", "X", "lactate_dehydrogenase") == pytest.approx(expected, abs=1e-6)
