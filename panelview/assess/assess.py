@@ -142,6 +142,7 @@ class _Board:
         below, above = action.open_below, action.open_above
         is_open = below | above
         p = verdicts.probability_reversed(g, sd)
+        # A step without a constant has a mass-action ratio all the same.
         self.ln_gamma[at] = np.where(has_value & ~is_open, action.ln_gamma, np.nan)
         self.g[at] = np.where(is_open, np.nan, g)
         self.g_sd[at] = sd
@@ -155,9 +156,6 @@ class _Board:
         self.censored[at] = is_open & readable
         self.inferred[at] = plan.inferred[action.active] & has_value
         self.defines[at] = defines & readable
-        # A step without a constant still has a mass-action ratio.
-        no_constant = has_value & ~is_open & np.isnan(action.delta_g)
-        self.ln_gamma[at] = np.where(no_constant, action.ln_gamma, self.ln_gamma[at])
 
     def compare(self, rows: NDArray[np.intp], action: MassAction, reference: Reference) -> None:
         """The specimens of one plan against the reference group."""

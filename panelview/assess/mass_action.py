@@ -53,14 +53,11 @@ class MassAction:
     constants taken as zero, so that differences between specimens stand where ΔG′ itself is unknown;
     constant_total: the part of it that comes from constants. assay_sd: the part of the
     uncertainty that concentrations and factors bring; sd: all of it. missing: some reactant has no
-    value. delta_g0_sd: of the column's own constant. defining columns have a ln_gamma of the measured
-    pair only and delta_g equal to RT ln_gamma.
+    value. Defining columns have the measured pair only in ln_gamma, so their delta_g is no ΔG′ of the step.
     """
 
     active: NDArray[np.intp]
     ln_gamma: Array
-    delta_g0: Array
-    delta_g0_sd: Array
     delta_g: Array
     compared: Array
     constant_total: Array
@@ -101,8 +98,7 @@ def evaluate(
     constant_total = const.known_total[at]
     compared = constant_total + rt * ln_q
     delta_g = np.where(const.unknown[at], np.nan, compared)
-    own = const.own[at]
-    ln_gamma = np.where(const.defines, ln_q, ln_q + const.inferred[at] / rt)
+    ln_gamma = ln_q + const.inferred[at] / rt
 
     assay_variance = _rows_product(used.sd[np.ix_(rows, touched)] ** 2, nu**2)
     assay_variance += plan.offset_sd[active] ** 2
@@ -117,8 +113,6 @@ def evaluate(
     return MassAction(
         active=active,
         ln_gamma=ln_gamma,
-        delta_g0=own,
-        delta_g0_sd=const.own_sd[at],
         delta_g=delta_g,
         compared=compared,
         constant_total=constant_total,
@@ -134,24 +128,20 @@ def evaluate(
 class _ConstantPart:
     """Constants of the active columns at the distinct conditions, [condition, active column].
 
-    known_total: Σ combination·ΔrG′° over steps with a constant; unknown: some step has none; own: of the
-    column's own step; inferred: the part of other steps, through which free pools are inferred.
+    known_total: Σ combination·ΔrG′° over steps with a constant; unknown: some step has none; inferred: the
+    part of steps other than the column's own, through which free pools are inferred.
     """
 
     known_total: Array
     unknown: Flags
-    own: Array
     inferred: Array
-    own_sd: Array
     variance: Array
-    defines: Flags
 
 
 def _constant_part(plan: Plan, active: NDArray[np.intp], constants: ConditionConstants) -> _ConstantPart:
     combination = plan.combination[active]
     steps = np.flatnonzero((combination != 0).any(axis=0))
     combination = combination[:, steps]
-    defines = np.array([bool(plan.defines[c]) for c in active], dtype=bool)
     g0 = constants.steps.delta_g0_prime[:, steps]
     sd = constants.steps.sd[:, steps]
     by = constants.steps.by[:, steps]
@@ -162,16 +152,12 @@ def _constant_part(plan: Plan, active: NDArray[np.intp], constants: ConditionCon
     variance = np.where(missing, 0.0, sd**2) @ (combination**2).T
     slope = np.einsum("csf,as->caf", np.where(missing[..., None], 0.0, by), combination)
     variance = variance + np.einsum("caf,cf->ca", slope**2, constants.sd**2)
-    owner = plan.owner[active]
-    own = constants.steps.delta_g0_prime[:, owner]
+    own = constants.steps.delta_g0_prime[:, plan.owner[active]]
     return _ConstantPart(
         known_total=known_total,
         unknown=unknown,
-        own=own,
         inferred=known_total - np.nan_to_num(own),
-        own_sd=constants.steps.sd[:, owner],
         variance=variance,
-        defines=defines,
     )
 
 
