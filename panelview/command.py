@@ -24,6 +24,7 @@ from panelview.catalogue.reactions import UnreadableReaction
 from panelview.catalogue.rows import CatalogueError
 from panelview.intake.constants_file import read_at, read_own_constants
 from panelview.intake.problems import InputRefused, Problem, Severity
+from panelview.intake.tabular import no_such_file
 from panelview.output.text import CAUTION
 
 DONE = 0
@@ -120,6 +121,8 @@ def _reference(parsed: argparse.Namespace, catalogue: Catalogue) -> ReferenceCho
     if text in ("published", "none"):
         return ReferenceChoice(text)
     if text.startswith("group:"):
+        if not text.removeprefix("group:").strip():
+            raise WrongUsage("--reference group: names no group; write group:NAME")
         return ReferenceChoice("group", text.removeprefix("group:"))
     from panelview.intake.read import read_panels
 
@@ -149,7 +152,7 @@ def _constants(parsed: argparse.Namespace) -> int:
             ) from error
         except UnreadableReaction as error:
             raise InputRefused((_at_problem(name, 0, "reaction", error.what, error.remedy),)) from error
-    elif parsed.reaction:
+    elif parsed.reaction is not None:
         try:
             rows = [table.one_reaction(parsed.reaction, catalogue, conditions)]
         except UnreadableReaction as error:
@@ -268,6 +271,8 @@ def _progress(quiet: bool) -> Callable[[int, int, str], None] | None:
 
 
 def _window(parsed: argparse.Namespace) -> int:
+    if parsed.file is not None and not parsed.file.exists():
+        raise no_such_file(parsed.file)
     if _lacks_display():
         return _say(
             "panelview: there is no display to open the window on; "

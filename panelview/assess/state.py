@@ -47,8 +47,8 @@ class _Specimen:
         self.ph = float(review.conditions.ph[row])
         self.rt = float(constants.rt[row])
         self._ln_k = -constants.steps.delta_g0_prime[at] / self.rt
-        slope = constants.steps.by[at] * constants.sd[at]
-        self._ln_k_sd = np.sqrt(constants.steps.sd[at] ** 2 + (slope**2).sum(axis=-1)) / self.rt
+        self._ln_k_sd = constants.steps.sd[at] / self.rt
+        self._ln_k_slope = -constants.steps.by[at] * constants.sd[at] / self.rt
 
     def has(self, *analytes: str) -> bool:
         return all(np.isfinite(self._used.ln_c[self._row, self._position[a]]) for a in analytes)
@@ -70,9 +70,11 @@ class _Specimen:
         shared, basis = self._used.shared_sd[self._row, k], self._used.basis[self._row, k]
         for code in set(basis.tolist()):
             variance += float(n[basis == code] @ shared[basis == code]) ** 2
-        for step, times in constants.items():
-            value += times * float(self._ln_k[self._step[step]])
-            variance += (times * float(self._ln_k_sd[self._step[step]])) ** 2
+        steps = [self._step[step] for step in constants]
+        times = np.array(list(constants.values()))
+        value += float(times @ self._ln_k[steps])
+        # Constants err apart, but all of them stand at the same pH, temperature, ionic strength and pMg.
+        variance += float(times**2 @ self._ln_k_sd[steps] ** 2 + ((times @ self._ln_k_slope[steps]) ** 2).sum())
         below, above = self._used.below[self._row, k], self._used.above[self._row, k]
         return _LogQuantity(
             value,

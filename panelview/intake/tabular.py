@@ -64,6 +64,11 @@ class Grid:
     above: tuple[tuple[int, list[str]], ...] = ()
 
 
+def no_such_file(path: Path) -> InputRefused:
+    """The refusal of a path that names nothing."""
+    return refused(path.name or str(path), 0, "", "there is no such file", "check the path")
+
+
 def read_file(path: Path) -> bytes:
     """The bytes of a file of bearable size. Raises InputRefused."""
     name = path.name or str(path)
@@ -79,7 +84,7 @@ def read_file(path: Path) -> bytes:
             raise refused(name, 0, "", f"the file has {size}, more than the {most} that are read", remedy)
         return path.read_bytes()
     except FileNotFoundError as error:
-        raise refused(name, 0, "", "there is no such file", "check the path") from error
+        raise no_such_file(path) from error
     except (OSError, ValueError) as error:
         why = getattr(error, "strerror", None) or str(error)
         raise refused(name, 0, "", f"the file cannot be read ({why})", "check its name and permissions") from error

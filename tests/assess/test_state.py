@@ -100,3 +100,19 @@ def test_state_lists_every_specimen_in_order(catalogue):
     ratios = [r.value for r in review.state if r.quantity == "lactate_pyruvate_ratio"]
     assert ratios == pytest.approx([(1.0 + k) / 0.07 for k in range(3)])
     assert np.all(np.diff(ratios) > 0)
+
+
+def test_errors_of_the_conditions_are_shared_by_the_constants_of_one_quantity(catalogue):
+    """Free AMP rests on creatine and adenylate kinase at one pH: K′(AK)/K′(CK)² moves with it as a whole."""
+    muscle = {"phosphocreatine": 25.0, "creatine": 12.0, "atp": 8.0}
+    panel = panel_of([Specimen("M", muscle, matrix="skeletal_muscle")])
+
+    def ln_amp(ph: float, ph_sd: float) -> tuple[float, float]:
+        exact = {f: ConditionChoice(None, 0.0, "x") for f in ("temperature", "ionic_strength", "pmg")}
+        settings = Settings(conditions={**exact, "ph": ConditionChoice(ph, ph_sd, "x")})
+        (row,) = [r for r in assess(panel, catalogue, settings).state if r.quantity == "amp_free"]
+        return np.log(row.value), (np.log(row.upper95) - np.log(row.lower95)) / (2 * 1.959963984540054)
+
+    slope = (ln_amp(7.06, 0.0)[0] - ln_amp(7.04, 0.0)[0]) / 0.02
+    with_ph, without = ln_amp(7.05, 0.1)[1], ln_amp(7.05, 0.0)[1]
+    assert with_ph**2 - without**2 == pytest.approx((0.1 * slope) ** 2, rel=1e-3)

@@ -541,3 +541,19 @@ def test_the_program_runs_as_a_program_of_its_own(tmp_path):
     assert "28 specimens reviewed" in done.stdout.decode("utf-8")
     assert done.stderr == b""
     assert sorted(p.name for p in tmp_path.iterdir()) == ["out"]
+
+
+@pytest.mark.parametrize(
+    ("words", "status", "told"),
+    [
+        (["nosuchpanel.csv"], 3, "nosuchpanel.csv::: there is no such file"),
+        (["constants", "--reaction", ""], 2, "exactly one"),
+        (["review", "x.csv", "--out", "y", "--reference", "group:"], 2, "names no group"),
+    ],
+    ids=["a file that is not there", "an empty reaction", "a group without a name"],
+)
+def test_what_names_nothing_is_told(words, status, told, capsys, monkeypatch):
+    for name in ("DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"):
+        monkeypatch.delenv(name, raising=False)
+    assert command.main(words) == status
+    assert told in capsys.readouterr().err
