@@ -196,7 +196,7 @@ class MainWindow(QMainWindow):
             self._middle.restoreState(middle)
         else:
             width, height = self.width(), self.height()
-            self._across.setSizes([width * 13 // 100, width * 65 // 100, width * 22 // 100])
+            self._across.setSizes([width * 14 // 100, width * 64 // 100, width * 22 // 100])
             self._middle.setSizes([height * 60 // 100, height * 22 // 100])
         if self.store.value("window/axis") == Axis.DISTANCE.value:
             self.steps.set_axis(Axis.DISTANCE)
